@@ -1,0 +1,82 @@
+"""The block as a mesh with names: volumes of one material each, and attachments through which wrenches enter."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
+
+from ..arrays import Floats, Ints
+
+if TYPE_CHECKING:
+    from skfem import MeshTet2
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Material:
+    """Isotropic, linear elastic; Pa, kg/m³, 1/K. Strengths are those of the casting at its temperature.
+
+    `yield_strength` and `tensile_strength` already carry the knock-down for the casting itself (EN 1706) and for
+    temperature, both kept beside them; `sources` gives the source of every value.
+    """
+
+    name: str
+    youngs_modulus: float
+    poissons_ratio: float
+    density: float
+    thermal_expansion: float
+    yield_strength: float
+    tensile_strength: float
+    bar_yield_strength: float
+    bar_tensile_strength: float
+    casting_knock_down: float
+    temperature: float
+    temperature_factor: float
+    cast: bool
+    sources: Mapping[str, str]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Attachment:
+    """A named set of boundary facets (indices into mesh.facets) through which one wrench enters.
+
+    kind is "front", "rear" or "other"; `sets` the face sets united in it; centroid (3,) and normal (3,) (outward,
+    area mean) in car axes; `moments` (3, 3) is the second moment of area about the centroid, ∫ r rᵀ dA.
+    """
+
+    name: str
+    kind: str
+    sets: tuple[str, ...]
+    facets: Ints
+    area: float
+    centroid: Floats
+    normal: Floats
+    moments: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Block:
+    """A 10-node tetrahedral mesh in car axes [m] with its names.
+
+    `mesh` is scikit-fem's MeshTet2 with `boundaries` (named facet sets) and `subdomains` (named volumes);
+    `volume_of` (n_elements,) indexes `volumes`; `materials` maps a volume to what it is made of.
+    mass [kg], cg (3,) and inertia (3, 3) about cg are those of the meshed metal.
+    """
+
+    mesh: MeshTet2
+    volumes: tuple[str, ...]
+    volume_of: Ints
+    materials: Mapping[str, Material]
+    attachments: tuple[Attachment, ...]
+    sha256: str
+    mass: float
+    cg: Floats
+    inertia: Floats
+    metadata: Mapping[str, Any]
+
+    def attachment(self, name: str, kind: str | None = None) -> Attachment:
+        """Return the attachment of this name (and kind, where a stud name occurs on both faces)."""
+        for item in self.attachments:
+            if item.name == name and (kind is None or item.kind == kind):
+                return item
+        raise KeyError(name)

@@ -1,0 +1,98 @@
+"""Balanced load cases: every force on every body, source by source.
+
+Axes C (load cases), S (sources), B (bodies: tub, engine, gearbox, FL, FR, RL, RR). A load case is the sum
+of its sources over axis S; every array with an S axis is linear in the sources.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from ..arrays import Floats
+
+BODIES = ("tub", "engine", "gearbox", "FL", "FR", "RL", "RR")
+SECTION = ("N", "V_y", "V_z", "T", "M_sag", "M_lat")
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class FaceLoads:
+    """What crosses one face, about `reference` (3,), the centroid of its studs.
+
+    `wrench` (C, S, 6) is force and moment on the engine through the studs; `stud_axial` (C, S, n) (+ tension) and
+    `stud_shear` (C, S, n, 2) (y, z, on the engine) are those of a rigid face on equal studs.
+    """
+
+    name: str
+    reference: Floats
+    studs: tuple[str, ...]
+    stud_at: Floats
+    wrench: Floats
+    stud_axial: Floats
+    stud_shear: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class LocalLoad:
+    """A load that enters the engine at a place of its own: force and moment (C, S, 3) about `at` (3,)."""
+
+    name: str
+    attachment: str | None
+    at: Floats
+    force: Floats
+    moment: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Term:
+    """One line of a free-body table: force and moment (C, 3) about `at` ((3,) or (C, 3)) on `body`."""
+
+    body: str
+    label: str
+    at: Floats
+    force: Floats
+    moment: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class LoadCases:
+    """The balanced load cases of a case file (see the module docstring for the axes).
+
+    acceleration (C, S, 3) of the car's CG and angular_acceleration (C, S, 3); wheel_force (C, S, 4, 3), road on
+    tyre, in the order FL FR RL RR; engine_acceleration (C, S, 3) is a - g at the engine's CG as far as the parts of
+    the case contain it (zero in free fall); crank_couple (C, S) is the couple about x on the engine block from shaft
+    torque and crank inertia; crank_torque (C,) is nan where no overall ratio was given.
+    residual (C,) is the largest of any body, as a share of the magnitudes on it, reassembled from `terms`;
+    front_rear_gap (C,) is the disagreement of the face wrenches summed from the front and from the rear.
+    """
+
+    names: tuple[str, ...]
+    sources: tuple[str, ...]
+    speed: Floats
+    downforce: Floats
+    drag: Floats
+    acceleration: Floats
+    angular_acceleration: Floats
+    engine_acceleration: Floats
+    wheel_force: Floats
+    crank_torque: Floats
+    crank_couple: Floats
+    faces: Mapping[str, FaceLoads]
+    engine_loads: tuple[LocalLoad, ...]
+    terms: tuple[Term, ...]
+    residual: Floats
+    front_rear_gap: Floats
+    omega_squared: Floats
+
+    @property
+    def wheels(self) -> Floats:
+        """Wheel forces of the cases, (C, 4, 3)."""
+        total: Floats = self.wheel_force.sum(axis=1)
+        return total
+
+    def section(self, face: str) -> Floats:
+        """Section wrench (C, 6) in the order of SECTION; the signs are those of the README's sign table."""
+        wrench = self.faces[face].wrench.sum(axis=1)
+        signs = (1.0, 1.0, 1.0, 1.0, -1.0, -1.0)
+        result: Floats = wrench * signs * (1.0 if face == "front" else -1.0)
+        return result

@@ -1,0 +1,314 @@
+"""What a case file says, as frozen values in SI units and the car's axes (ISO 8855).
+
+No parsing lives here: the reader builds these, every later room only reads them.
+Lengths m, masses kg, forces N, moments N·m, stiffness N/m and N·m/rad, angles rad, stress Pa.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import Any
+
+from ..arrays import Floats
+
+CORNERS = ("FL", "FR", "RL", "RR")
+CARRIERS = ("tub", "engine", "gearbox")
+FACES = ("front", "rear")
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Body:
+    """A rigid mass: cg (3,) in the car, inertia (3, 3) about its own cg."""
+
+    name: str
+    mass: float
+    cg: Floats
+    inertia: Floats
+    inertia_estimated: bool = False
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Link:
+    """One two-force member of the left corner: outboard and inboard ends (3,), the body of its inboard end."""
+
+    name: str
+    outboard: Floats
+    inboard: Floats
+    carried_by: str
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Rocker:
+    """What the left pushrod works on; pairs are (rocker end, far end), each (3,)."""
+
+    pivot: Floats
+    axis: Floats
+    spring: tuple[Floats, Floats] | None
+    bar_link: tuple[Floats, Floats] | None
+    bar_bearing_y: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Axle:
+    """One axle; `corner` is the left unsprung mass, mirrored to the right."""
+
+    name: str
+    x: float
+    track: float
+    loaded_radius: float
+    roll_centre_height: float
+    roll_stiffness: float
+    bar_share: float
+    carried_by: str
+    brakes: str
+    corner: Body
+    links: Mapping[str, Link] = field(default_factory=dict)
+    rocker: Rocker | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Device:
+    """An aero element acting at a point (3,) of one body; areas are Cz·A (+ down) and Cx·A (+ drag) in m²."""
+
+    name: str
+    on: str
+    at: Floats
+    downforce_area: float
+    drag_area: float
+    attachment: str | None = None
+    map: Path | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class AeroTotal:
+    """The whole car's downforce [N] at a speed [m/s], and the front share by a stated convention."""
+
+    downforce: float
+    at_speed: float
+    front_share: float
+    share_includes_drag_moment: bool
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Drive:
+    """How the car is driven and braked; crank_direction is the sign of crank rotation about +x."""
+
+    axle: str
+    brake_front_share: float
+    crank_direction: int
+    crank_inertia: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Engine:
+    """Engine figures, all optional: m, N·m, rad/s."""
+
+    bore: float | None = None
+    stroke: float | None = None
+    cylinders: int | None = None
+    peak_torque: float | None = None
+    max_speed: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Stud:
+    """One stud of a face: at (2,) = (y, z); preload [N], scatter and load factor as ratios."""
+
+    name: str
+    at: Floats
+    size: str
+    property_class: str
+    preload: float
+    preload_scatter: float
+    load_factor: float
+    friction: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Face:
+    """The front (tub to engine) or rear (engine to gearbox) plane at x with its studs in file order."""
+
+    name: str
+    x: float
+    studs: tuple[Stud, ...]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Manoeuvre:
+    """What driver and road do.
+
+    `acceleration` (3,) is that of the car's CG; `extra_wheel_force` maps a corner to a force (3,) at its contact
+    point and makes this a force-mode manoeuvre. `parts` keeps only these kinds of source (None: all).
+    """
+
+    name: str
+    speed: float = 0.0
+    acceleration: Floats
+    drive: str = "hold_speed"
+    overall_ratio: float | None = None
+    crank_acceleration: float = 0.0
+    extra_wheel_force: Mapping[str, Floats] = field(default_factory=dict)
+    parts: tuple[str, ...] | None = None
+    basis: str | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class MaterialChoice:
+    """A volume (name or fnmatch pattern), the grade it is made of or its own properties, its temperature [K]."""
+
+    volume: str
+    grade: str | None
+    properties: Mapping[str, Any] | None
+    temperature: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Carried:
+    """A mass the mesh does not have, carried by a named attachment; inertia (3, 3) about its own cg."""
+
+    name: str
+    on: str
+    mass: float
+    cg: Floats
+    inertia: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class BlockSpec:
+    """Where the block comes from and how its names meet the car's."""
+
+    mesh: Path
+    mesh_unit: float
+    turn: Floats
+    place: Floats
+    carried_on: str
+    carried: tuple[Carried, ...]
+    materials: tuple[MaterialChoice, ...]
+    front: Mapping[str, str]
+    rear: Mapping[str, str]
+    other: Mapping[str, str]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Installation:
+    """How the block is held.
+
+    `pad_stiffness` lists (label, normal, tangential) [N/m] per pad: one entry where the user gave it, three
+    (soft, middle, stiff) where it is bounded; empty without any base for an estimate.
+    `tub` is None for a rigid tub, else a (3n, 3n) stiffness in stud order. `second_paths` is the user's own
+    statement ("none" or None when unstated).
+    """
+
+    pad_stiffness: tuple[tuple[str, float, float], ...]
+    pad_stiffness_given: bool
+    tub: Floats | None
+    second_paths: str | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class SecondPath:
+    """A spring [N/m] along the line between a point (3,) of one body and a point (3,) of another."""
+
+    name: str
+    from_body: str
+    from_at: Floats
+    to_body: str
+    to_at: Floats
+    stiffness: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Limits:
+    """Factors and allowables; None where the user gave none and no default exists."""
+
+    yield_factor: float
+    rupture_factor: float
+    casting_factor: float
+    separation_factor: float
+    slip_factor: float
+    bolt_factor: float
+    torsion_min: float | None = None
+    bending_min: float | None = None
+    twist_share: float | None = None
+    stud_axial: float | None = None
+    stud_shear: float | None = None
+    face_moment: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Known:
+    """How well one key is known: basis "measured", "drawing", "estimate" or "guess"; band is a ratio or None."""
+
+    key: str
+    basis: str
+    source: str
+    band: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Bound:
+    """A missing number run at both ends: texts as they would stand in the case file."""
+
+    key: str
+    low: str
+    middle: str
+    high: str
+    reason: str
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Default:
+    """A missing number that has a default, with its source ("unsourced" is said plainly)."""
+
+    key: str
+    value: str
+    source: str
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Check:
+    """One thing that can fail: value against limit, both in the unit named."""
+
+    name: str
+    ok: bool
+    value: float
+    limit: float
+    note: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Case:
+    """A case file, read, checked and converted. `document` is the merged TOML it was built from."""
+
+    path: Path
+    title: str
+    sha256: str
+    document: Mapping[str, Any]
+    overrides: tuple[str, ...]
+    air_density: float
+    gravity: float
+    bodies: Mapping[str, Body]
+    axles: Mapping[str, Axle]
+    devices: tuple[Device, ...]
+    aero_total: AeroTotal | None
+    drive: Drive
+    engine: Engine
+    tyre_friction: float | None
+    faces: Mapping[str, Face]
+    manoeuvres: tuple[Manoeuvre, ...]
+    block: BlockSpec | None
+    installation: Installation
+    paths: tuple[SecondPath, ...]
+    limits: Limits
+    engine_maker_consent: str
+    known: Mapping[str, Known]
+    bounds: tuple[Bound, ...]
+    defaults: tuple[Default, ...]
+    checks: tuple[Check, ...]
+
+    @property
+    def wheelbase(self) -> float:
+        """Distance between the axles [m]."""
+        return self.axles["front"].x - self.axles["rear"].x
