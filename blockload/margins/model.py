@@ -57,6 +57,17 @@ class Verdict:
     not_judged: tuple[str, ...]
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Movement:
+    """How far one bounded input moves the lowest margin: the margin with the input at its low and high end."""
+
+    key: str
+    low: str
+    high: str
+    margin_low: float | None
+    margin_high: float | None
+
+
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class SurfaceMargins:
     """Margin field over the library's surface entries: worst over criteria and cases at the middle stiffness.
@@ -79,3 +90,4 @@ class Margins:
     surface: SurfaceMargins | None = None
     stiffness: Mapping[str, float] = field(default_factory=dict)
     requirements: Mapping[str, Mapping[str, float]] = field(default_factory=dict)
+    movements: tuple[Movement, ...] = ()

@@ -1,0 +1,5 @@
+"""`python -m blockload` is the command `blockload`."""
+
+from .cli import main
+
+main()

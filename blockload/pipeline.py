@@ -1,0 +1,147 @@
+"""The whole job as a chain of pure steps; the only module that knows every room.
+
+case file → Case → LoadCases → Block → Library → PadLoads → Margins. Heavy rooms are imported by the step that
+needs them, so that reading and balancing stay instant.
+"""
+
+from __future__ import annotations
+
+import uuid
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from .car.balance import balance
+from .case.reading import read, replaced
+
+if TYPE_CHECKING:
+    from .block.model import Block
+    from .car.model import LoadCases
+    from .case.model import Bound, Case
+    from .installation.model import PadLoads
+    from .margins.model import Margins, Movement
+    from .response.model import Library
+
+Progress = Callable[[str, float], None]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Run:
+    """Everything one check produced; block, library and pads are None at level `faces`."""
+
+    run_id: str
+    case: Case
+    cases: LoadCases
+    block: Block | None
+    library: Library | None
+    pads: PadLoads | None
+    margins: Margins
+
+
+def loads(path: Path, overrides: Sequence[str] = ()) -> tuple[Case, LoadCases]:
+    """Read a case file and balance its load cases."""
+    case = read(path, overrides)
+    return case, balance(case)
+
+
+def check(
+    path: Path,
+    overrides: Sequence[str] = (),
+    *,
+    solver: str = "auto",
+    cache: Path | None = None,
+    progress: Progress | None = None,
+) -> Run:
+    """Go from a case file to margins.
+
+    Parameters
+    ----------
+    path, overrides
+        The case file and `KEY=VALUE` texts laid over it.
+    solver : str
+        "auto", or the name of one direct solver.
+    cache : Path, optional
+        Folder of the response libraries; None for the user's own.
+    progress : callable, optional
+        Told the step and how far it is, 0 to 1.
+
+    Raises
+    ------
+    BlockloadError
+        For bad input, a load case that does not balance, or a block that cannot be solved.
+    """
+    tell = progress or (lambda _step, _share: None)
+    tell("loads", 0.0)
+    case, cases = loads(path, overrides)
+    block, library = _respond(case, solver=solver, cache=cache, progress=tell)
+    tell("margins", 0.0)
+    pads, margins = _judge(case, cases, block, library)
+    margins = _with_movements(case, block, library, margins, tell)
+    tell("margins", 1.0)
+    return Run(
+        run_id=uuid.uuid4().hex[:12],
+        case=case,
+        cases=cases,
+        block=block,
+        library=library,
+        pads=pads,
+        margins=margins,
+    )
+
+
+def _respond(
+    case: Case, *, solver: str, cache: Path | None, progress: Progress
+) -> tuple[Block | None, Library | None]:
+    if case.block is None:
+        return None, None
+    from .block.building import build
+    from .response.respond import respond
+
+    progress("block", 0.0)
+    block = build(case)
+    return block, respond(block, solver=solver, cache=cache, progress=progress)
+
+
+def _judge(
+    case: Case, cases: LoadCases, block: Block | None, library: Library | None
+) -> tuple[PadLoads | None, Margins]:
+    from .margins.judging import judge
+
+    if block is None or library is None:
+        return None, judge(case, cases, None, None, None)
+    from .installation.install import install
+
+    pads = install(cases, block, library, case)
+    return pads, judge(case, cases, block, library, pads)
+
+
+def _with_movements(
+    case: Case, block: Block | None, library: Library | None, margins: Margins, progress: Progress
+) -> Margins:
+    """Rerun the dense part at both ends of every bounded input and lay the result over the verdict."""
+    from .margins.movements import moved
+
+    found = []
+    for index, bound in enumerate(case.bounds):
+        progress("bounded inputs", index / len(case.bounds))
+        found.append(_movement(case, bound, block, library))
+    return moved(margins, tuple(found))
+
+
+def _movement(case: Case, bound: Bound, block: Block | None, library: Library | None) -> Movement:
+    from .margins.model import Movement
+
+    low, high = (
+        _judge(other, balance(other), block, library)[1].verdict.lowest_margin for other in _ends(case, bound)
+    )
+    return Movement(key=bound.key, low=bound.low, high=bound.high, margin_low=low, margin_high=high)
+
+
+def _ends(case: Case, bound: Bound) -> Iterator[Case]:
+    for text in (bound.low, bound.high):
+        changed = replaced(case, bound.key, text)
+        yield replace(changed, bounds=())
+
+
+__all__ = ["Run", "check", "loads"]
