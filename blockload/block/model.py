@@ -55,12 +55,24 @@ class Attachment:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class CarriedMass:
+    """A mass the mesh does not have, on a named attachment: kg, cg (3,) in the car, inertia (3, 3) about its cg."""
+
+    name: str
+    attachment: str
+    mass: float
+    cg: Floats
+    inertia: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Block:
     """A 10-node tetrahedral mesh in car axes [m] with its names.
 
     `mesh` is scikit-fem's MeshTet2 with `boundaries` (named facet sets) and `subdomains` (named volumes);
     `volume_of` (n_elements,) indexes `volumes`; `materials` maps a volume to what it is made of.
     mass [kg], cg (3,) and inertia (3, 3) about cg are those of the meshed metal.
+    `carried` are the masses the mesh does not have, the remainder of the engine included.
     """
 
     mesh: MeshTet2
@@ -73,6 +85,7 @@ class Block:
     cg: Floats
     inertia: Floats
     metadata: Mapping[str, Any]
+    carried: tuple[CarriedMass, ...] = ()
 
     def attachment(self, name: str, kind: str | None = None) -> Attachment:
         """Return the attachment of this name (and kind, where a stud name occurs on both faces)."""
