@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 
 from ..arrays import Floats
 
@@ -17,6 +18,8 @@ class PadLoads:
     relief (C, S, 6): rigid acceleration (about the block's cg) that the attachment wrenches alone imply;
     sum_gap: largest difference of pad sums and the car's face wrench, as a share; left_out (C,): size of the
     neglected ω×(ω×r) inside the block [m/s²].
+    sources: names along S, those of the load cases and "heat" after them where temperatures were given;
+    checks: what was measured while solving ("residual", "balance", "mass", "cg", "inertia"): largest values.
     """
 
     variants: tuple[str, ...]
@@ -29,3 +32,5 @@ class PadLoads:
     sum_gap: float
     relief_gap: float
     left_out: Floats
+    sources: tuple[str, ...] = ()
+    checks: Mapping[str, float] = field(default_factory=dict)
