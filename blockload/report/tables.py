@@ -1,0 +1,345 @@
+"""Tables as plain data: made once from the run's values, drawn by the console and by the page alike."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+import numpy as np
+
+from ..arrays import Floats
+from ..car.model import BODIES, SECTION, LoadCases
+from ..case.model import CORNERS, Case, Check
+from ..margins.model import Margin, Margins
+from .wording import (
+    ABSENT,
+    MINUS,
+    band,
+    figure,
+    fixed,
+    plain_name,
+    point,
+    quantity,
+    section_words,
+)
+
+Row = tuple[str, ...]
+_NUMERIC = re.compile(rf"[+{MINUS}]?\d[\d.,e+{MINUS}-]*( to [+{MINUS}]?\d[\d.]*)?|{ABSENT}|")
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Table:
+    """A titled table of texts; `note` stands beneath it. The first column names the row."""
+
+    title: str
+    columns: Row
+    rows: tuple[Row, ...]
+    note: str = ""
+
+    def numeric(self, column: int) -> bool:
+        """Whether every cell of a column is a number (drawn flush right)."""
+        return bool(self.rows) and all(is_number(row[column]) for row in self.rows)
+
+
+def is_number(cell: str) -> bool:
+    """Whether a cell holds a number, a band of two, a dash, or nothing."""
+    return _NUMERIC.fullmatch(cell) is not None
+
+
+def table(title: str, columns: Iterable[str], rows: Iterable[Iterable[str]], note: str = "") -> Table:
+    """Return a Table from any iterables."""
+    return Table(title=title, columns=tuple(columns), rows=tuple(tuple(row) for row in rows), note=note)
+
+
+def load_case_summary(cases: LoadCases) -> Table:
+    """Speed, aero, accelerations and the balance of every load case."""
+    acceleration = cases.acceleration.sum(axis=1)
+    turning = cases.angular_acceleration.sum(axis=1)
+    rows = [
+        (
+            plain_name(name),
+            fixed(cases.speed[i], 1),
+            fixed(cases.downforce[i], 2, scale=1e3),
+            fixed(cases.drag[i], 2, scale=1e3),
+            *(fixed(a, 1) for a in acceleration[i]),
+            *(fixed(a, 1) for a in turning[i]),
+            figure(cases.residual[i], digits=1),
+        )
+        for i, name in enumerate(cases.names)
+    ]
+    columns = ("load case", "speed", "down-force", "drag", "a_x", "a_y", "a_z", "α_x", "α_y", "α_z", "residual")
+    note = (
+        "m/s, kN, m/s² at the car's CG, rad/s²; residual: the largest of any body, as a share of the forces (moments) "
+        "acting on it, summed again from the written terms."
+    )
+    return table("Load cases", columns, rows, note)
+
+
+def wheel_loads(cases: LoadCases) -> Table:
+    """Vertical wheel loads and the friction the hardest-worked tyre uses."""
+    wheels = cases.wheels
+    used = friction_used(wheels)
+    rows = []
+    for i, name in enumerate(cases.names):
+        worst = int(np.nanargmax(used[i])) if np.isfinite(used[i]).any() else None
+        most = ABSENT if worst is None else f"{fixed(used[i, worst], 2)} ({CORNERS[worst]})"
+        rows.append((plain_name(name), *(fixed(f, 2, scale=1e3) for f in wheels[i, :, 2]), most))
+    note = "kN, road on tyre. Most friction used: √(F_x² + F_y²)/F_z of the hardest-worked tyre."
+    return table("Vertical wheel loads", ("load case", *CORNERS, "most friction used"), rows, note)
+
+
+def wheel_forces(cases: LoadCases) -> Table:
+    """All three components at every wheel."""
+    wheels, used = cases.wheels, friction_used(cases.wheels)
+    rows = [
+        (plain_name(name), CORNERS[k], *(fixed(f, 2, scale=1e3) for f in wheels[i, k]), fixed(used[i, k], 2))
+        for i, name in enumerate(cases.names)
+        for k in range(4)
+    ]
+    note = (
+        "kN, road on tyre, at the contact point; x forward, y left, z up. No value where the wheel is not pressed down."
+    )
+    return table("Wheel forces", ("load case", "wheel", "F_x", "F_y", "F_z", "friction used"), rows, note)
+
+
+def friction_used(wheels: Floats) -> Floats:
+    """Return √(Fx² + Fy²)/Fz (C, 4); nan where the wheel is not pressed down."""
+    vertical = np.where(wheels[..., 2] > 0, wheels[..., 2], np.nan)
+    used: Floats = np.hypot(wheels[..., 0], wheels[..., 1]) / vertical
+    return used
+
+
+def section_wrenches(cases: LoadCases, indices: Iterable[int] | None = None) -> Table:
+    """Six components at both faces, with their reference points."""
+    chosen = list(range(len(cases.names)) if indices is None else indices)
+    rows = [
+        (plain_name(cases.names[i]), face, *(fixed(w, 3, scale=1e3, sign=True) for w in cases.section(face)[i]))
+        for i in chosen
+        for face in cases.faces
+    ]
+    places = "; ".join(f"{name} {point(face.reference)} m" for name, face in cases.faces.items())
+    note = (
+        "kN and kN·m about the centroid of each face's studs: "
+        f"{places}. N + pulled; V front part on rear part; T about +x of front part on rear part; "
+        "M_sag + top pressed, bottom pulled; M_lat + left pulled."
+    )
+    return table("Section wrenches", ("load case", "face", *SECTION), rows, note)
+
+
+def section_in_words(cases: LoadCases, index: int) -> Table:
+    """One load case's section wrenches, each sign in words."""
+    columns = ("component", *(f"{face} face" for face in cases.faces))
+    sections = [cases.section(face)[index] for face in cases.faces]
+    rows = [
+        (component, *(section_words(component, float(s[k])) for s in sections)) for k, component in enumerate(SECTION)
+    ]
+    places = "; ".join(f"{name} {point(face.reference)} m" for name, face in cases.faces.items())
+    return table(f"What crosses the faces: {plain_name(cases.names[index])}", columns, rows, f"About {places}.")
+
+
+def face_routes(case: Case, cases: LoadCases) -> Table:
+    """The disagreement of the face wrenches summed from ahead of the cut and from behind it."""
+    rows = [
+        (plain_name(name), figure(cases.front_rear_gap[i], digits=2), figure(cases.omega_squared[i], digits=2))
+        for i, name in enumerate(cases.names)
+    ]
+    note = (
+        "Difference of the face wrench summed over everything ahead of the cut and over everything behind it, as a "
+        "share of the forces; ω² is the size of the centripetal part that a linear d'Alembert set leaves out (rad²/s²)."
+    )
+    return table("Same wrench by two routes", ("load case", "difference", "ω²"), rows, note)
+
+
+def stud_extremes(cases: LoadCases) -> Table:
+    """Greatest pull, press and shear of every stud with the load case of each (rigid face, equal studs)."""
+    rows: list[Row] = []
+    for face in cases.faces.values():
+        axial = face.stud_axial.sum(axis=1)
+        shear = np.linalg.norm(face.stud_shear.sum(axis=1), axis=-1)
+        for k, stud in enumerate(face.studs):
+            worst = (int(axial[:, k].argmax()), int(axial[:, k].argmin()), int(shear[:, k].argmax()))
+            values = (axial[worst[0], k], axial[worst[1], k], shear[worst[2], k])
+            happens = (values[0] > 0, values[1] < 0, True)
+            cells = [
+                f"{fixed(v, 2, scale=1e3, sign=j < 2)} {plain_name(cases.names[i])}" if happens[j] else "never"
+                for j, (v, i) in enumerate(zip(values, worst, strict=True))
+            ]
+            rows.append((f"{face.name} {stud}", point(face.stud_at[k, -2:]), *cells))
+    columns = ("stud", "(y, z) m", "most pulled, kN", "most pressed, kN", "most shear, kN")
+    return table("Stud forces", columns, rows, "Rigid face on equal studs, before preload; axial + pulled.")
+
+
+def stud_forces(cases: LoadCases, index: int) -> Table:
+    """Axial and shear force of every stud in one load case."""
+    rows = []
+    for face in cases.faces.values():
+        axial = face.stud_axial[index].sum(axis=0)
+        shear = face.stud_shear[index].sum(axis=0)
+        rows += [
+            (
+                f"{face.name} {stud}",
+                fixed(axial[k], 2, scale=1e3, sign=True),
+                *(fixed(s, 2, scale=1e3, sign=True) for s in shear[k]),
+                fixed(float(np.hypot(*shear[k])), 2, scale=1e3),
+            )
+            for k, stud in enumerate(face.studs)
+        ]
+    note = "kN on the engine; axial + pulled; S_y + left, S_z + up. Rigid face on equal studs, before preload."
+    return table(f"Studs: {plain_name(cases.names[index])}", ("stud", "axial", "S_y", "S_z", "shear"), rows, note)
+
+
+def free_bodies(cases: LoadCases, index: int) -> tuple[Table, ...]:
+    """Every force on every body of one load case; each table ends with its sum about the car's origin."""
+    tables = []
+    for body in BODIES:
+        terms = [term for term in cases.terms if term.body == body]
+        if not terms:
+            continue
+        rows, total = [], np.zeros(6)
+        for term in terms:
+            at = np.broadcast_to(term.at, term.force.shape)[index]
+            force, moment = term.force[index], term.moment[index]
+            if not (force.any() or moment.any()):
+                continue
+            total += np.concatenate([force, moment + np.cross(at, force)])
+            rows.append(
+                (plain_name(term.label), point(at), *(fixed(x, 3, scale=1e3, sign=True) for x in (*force, *moment)))
+            )
+        rows.append(("sum about the origin", "(0, 0, 0)", *(fixed(x, 3, scale=1e3, sign=True) for x in total)))
+        columns = ("on this body", "at, m", "F_x", "F_y", "F_z", "M_x", "M_y", "M_z")
+        tables.append(table(f"Free body: {body}", columns, rows, "kN and kN·m; inertia enters as d'Alembert's force."))
+    return tuple(tables)
+
+
+def margin_table(margins: Iterable[Margin], title: str = "Margins") -> Table:
+    """Lowest margins with place, governing and second load case, band and trust."""
+    columns = (
+        "criterion",
+        "place",
+        "load case",
+        "applied",
+        "allowable",
+        "factor",
+        "margin",
+        "second-worst",
+        "trust",
+    )
+    rows = [
+        (
+            item.criterion,
+            f"{plain_name(item.place)} {point(item.at)}" if any(item.at) else plain_name(item.place),
+            plain_name(item.load_case),
+            quantity(item.applied, item.unit),
+            quantity(item.allowable, item.unit),
+            figure(item.factor),
+            band(item.band, item.margin),
+            "" if item.second is None else f"{plain_name(item.second[0])} {fixed(item.second[1], 2)}",
+            item.trust,
+        )
+        for item in margins
+    ]
+    note = "margin = allowable / (factor × applied) − 1; below zero fails. A band: both ends of what is not known."
+    return table(title, columns, rows, note)
+
+
+def cause_table(margins: Iterable[Margin]) -> Table:
+    """Which sources make each margin's applied value, largest share first."""
+    rows = []
+    for item in margins:
+        ordered = sorted(item.causes, key=lambda cause: -abs(cause.share))[:6]
+        shares = ", ".join(f"{plain_name(c.source)} {fixed(100 * c.share, 0, sign=True)} %" for c in ordered)
+        rows.append((f"{item.criterion}, {plain_name(item.place)}", plain_name(item.load_case), shares, item.method))
+    note = "Shares of the applied value by source; they sum to 100 %, and a negative share relieves."
+    return table("What causes each margin", ("margin", "load case", "causes", "method"), rows, note)
+
+
+def check_table(checks: Iterable[Check], title: str = "Checks") -> Table:
+    """Every check with its value against its limit."""
+    rows = [
+        (item.name, "passed" if item.ok else "FAILED", figure(item.value), figure(item.limit), item.note)
+        for item in checks
+    ]
+    return table(title, ("check", "outcome", "value", "limit", "note"), rows)
+
+
+def assumption_tables(case: Case, margins: Margins | None) -> tuple[Table, ...]:
+    """Bounded, defaulted and stated-basis inputs, and what was overridden on the command line."""
+    found = []
+    if case.bounds:
+        moves = {item.key: item for item in margins.movements} if margins is not None else {}
+        rows: list[Row] = []
+        for bound in case.bounds:
+            move = moves.get(bound.key)
+            ends = ABSENT if move is None else f"{fixed(move.margin_low, 2)} and {fixed(move.margin_high, 2)}"
+            rows.append((bound.key, bound.low, bound.middle, bound.high, ends, bound.reason))
+        columns = ("missing number", "low", "middle", "high", "lowest margin at the ends", "why these")
+        found.append(table("Bounded inputs", columns, rows, "Not in the case file: run at both ends."))
+    if case.defaults:
+        rows = [(item.key, item.value, item.source) for item in case.defaults]
+        found.append(table("Defaults used", ("key", "value", "source"), rows))
+    if case.known:
+        rows = [
+            (item.key, item.basis, "" if item.band is None else f"±{fixed(100 * item.band, 1)} %", item.source)
+            for item in case.known.values()
+        ]
+        found.append(table("How well inputs are known", ("key", "basis", "band", "source"), rows))
+    if case.overrides:
+        found.append(table("Set on the command line", ("key and value",), [(text,) for text in case.overrides]))
+    return tuple(found)
+
+
+def unsourced(case: Case) -> tuple[str, ...]:
+    """Keys whose default has no source."""
+    return tuple(item.key for item in case.defaults if "unsourced" in item.source.lower())
+
+
+def device_table(case: Case) -> Table:
+    """Every aero device with the body that carries it."""
+    rows = [
+        (plain_name(item.name), item.on, point(item.at), fixed(item.downforce_area, 3), fixed(item.drag_area, 3))
+        for item in case.devices
+    ]
+    columns = ("device", "carried by", "at, m", "downforce area, m²", "drag area, m²")
+    return table("Aero devices", columns, rows, "Areas are C_z·A (+ down) and C_x·A (+ drag).")
+
+
+# Ending of a key: unit shown and its size in SI.
+KEY_UNITS = {
+    "_Nm_per_rad": ("kN·m/rad", 1e3),
+    "_Nm": ("kN·m", 1e3),
+    "_N_per_m": ("kN/mm", 1e6),
+    "_N": ("kN", 1e3),
+    "_m3": ("cm³", 1e-6),
+    "_m4": ("cm⁴", 1e-8),
+    "_m2": ("cm²", 1e-4),
+    "_Pa": ("MPa", 1e6),
+    "_m": ("mm", 1e-3),
+    "_rad": ("mrad", 1e-3),
+}
+
+
+def amount(key: str, value: float | None) -> Row:
+    """Return name, figure and unit of a value whose key ends in its SI unit."""
+    for ending, (unit, scale) in KEY_UNITS.items():
+        if key.endswith(ending):
+            return plain_name(key.removesuffix(ending)), figure(value, scale=scale), unit
+    return plain_name(key), figure(value), ""
+
+
+def stiffness_table(margins: Margins) -> Table:
+    """Stiffness between the faces."""
+    rows = [amount(key, value) for key, value in margins.stiffness.items()]
+    return table("Stiffness of the block between its faces", ("mode", "value", "unit"), rows)
+
+
+def requirement_tables(margins: Margins) -> tuple[Table, ...]:
+    """The requirements sheet: what each face asks of a block that is not there yet."""
+    return tuple(
+        table(
+            f"Required of the block: {plain_name(place)}",
+            ("quantity", "at least", "unit"),
+            [amount(key, value) for key, value in values.items()],
+        )
+        for place, values in margins.requirements.items()
+    )
