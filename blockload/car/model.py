@@ -7,7 +7,10 @@ of its sources over axis S; every array with an S axis is linear in the sources.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
 
 from ..arrays import Floats
 
@@ -63,7 +66,10 @@ class LoadCases:
     the case contain it (zero in free fall); crank_couple (C, S) is the couple about x on the engine block from shaft
     torque and crank inertia; crank_torque (C,) is nan where no overall ratio was given.
     residual (C,) is the largest of any body, as a share of the magnitudes on it, reassembled from `terms`;
-    front_rear_gap (C,) is the disagreement of the face wrenches summed from the front and from the rear.
+    front_rear_gap (C,) is the disagreement of the face wrenches summed from the front and from the rear, as a share.
+    omega_squared (C,) is that of the steady turn's yaw rate [rad^2/s^2]: it sizes the neglected omega x (omega x r).
+    wheel_lift (C,) tells whether any wheel load of the whole manoeuvre (all parts) is below zero: the ground would
+    have to pull, so such a case is not a state of the car.
     """
 
     names: tuple[str, ...]
@@ -83,12 +89,20 @@ class LoadCases:
     residual: Floats
     front_rear_gap: Floats
     omega_squared: Floats
+    wheel_lift: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=bool))
 
     @property
     def wheels(self) -> Floats:
         """Wheel forces of the cases, (C, 4, 3)."""
         total: Floats = self.wheel_force.sum(axis=1)
         return total
+
+    @property
+    def friction_used(self) -> Floats:
+        """Grip used by each tyre, sqrt(Fx^2 + Fy^2) / Fz, (C, 4); nan where Fz <= 0."""
+        x, y, z = np.moveaxis(self.wheels, -1, 0)
+        used: Floats = np.divide(np.hypot(x, y), z, out=np.full_like(z, np.nan), where=z > 0)
+        return used
 
     def section(self, face: str) -> Floats:
         """Section wrench (C, 6) in the order of SECTION; the signs are those of the README's sign table."""

@@ -1,0 +1,83 @@
+"""The free-body tables: every force on every body, one line each, summed over the sources.
+
+Each line is built from the numbers the load case hands on (wheel forces, accelerations, face wrenches, corner
+resultants), not from the equations that closed it, so that summing a body's lines is a test of what is written.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from ..arrays import Floats
+from ..case.model import CORNERS, Case
+from .aero import device_force
+from .bodies import Chassis, Masses
+from .corners import CornerLoads
+from .manoeuvres import Inputs
+from .model import BODIES, FaceLoads, Term
+from .wrench import moved
+
+
+def body_terms(case: Case, inputs: Inputs, car: Masses, motion: Floats) -> list[Term]:
+    """Weight, inertia and aero forces, from the car's motion (C, 6)."""
+    result = []
+    for b, body in enumerate(BODIES):
+        weight = np.zeros((len(inputs.names), 3))
+        weight[:, 2] = -car.mass[b] * case.gravity * inputs.keep["weight"]
+        arm = np.broadcast_to(car.cg[b] - car.car_cg, weight.shape)
+        inertia = -car.mass[b] * (motion[:, :3] + np.cross(motion[:, 3:], arm))
+        result.append(_term(body, "weight", car.cg[b], weight))
+        result.append(_term(body, "inertia", car.cg[b], inertia, -motion[:, 3:] @ car.inertia[b].T))
+    for device in case.devices:
+        label = f"aero.{device.name}"
+        result += [_term(device.on, label, device.at, device_force(device, inputs))]
+    return result
+
+
+def wheel_terms(frame: Chassis, wheel_force: Floats, corners: CornerLoads) -> list[Term]:
+    """Tyre forces (C, S, 4, 3), corner resultants at the wheel centres on corner and carrier, half-shaft couples."""
+    result = []
+    tyre = wheel_force.sum(axis=1)
+    resultant = moved(corners.resultant.sum(axis=1), frame.wheel_centre)
+    shaft = corners.shaft.sum(axis=1)
+    for i, corner in enumerate(CORNERS):
+        carrier, casing = BODIES[frame.carrier[i]], BODIES[frame.casing[i]]
+        centre, force, moment = frame.wheel_centre[i], resultant[:, i, :3], resultant[:, i, 3:]
+        result.append(_term(corner, "tyre", frame.contact[i], tyre[:, i]))
+        result.append(_term(corner, carrier, centre, -force, -moment))
+        result.append(_term(carrier, f"corner.{corner}", centre, force, moment))
+        if shaft[:, i].any():
+            couple = np.zeros_like(force)
+            couple[:, 1] = shaft[:, i]
+            result.append(_term(corner, "half-shaft", centre, np.zeros_like(force), couple))
+            result.append(_term(casing, f"half-shaft {corner}", centre, np.zeros_like(force), -couple))
+    return result
+
+
+def face_terms(front: FaceLoads, rear: FaceLoads) -> list[Term]:
+    """Each face on both bodies it joins."""
+    result = []
+    for face, other in ((front, "tub"), (rear, "gearbox")):
+        wrench = face.wrench.sum(axis=1)
+        label = f"{face.name} face"
+        result.append(_term("engine", label, face.reference, wrench[:, :3], wrench[:, 3:]))
+        result.append(_term(other, label, face.reference, -wrench[:, :3], -wrench[:, 3:]))
+    return result
+
+
+def crank_terms(car: Masses, shaft: Floats, inertia: Floats) -> list[Term]:
+    """Input-shaft couple (C,) about x on engine and gearbox, and the crank's inertia couple (C,) on the engine."""
+    none = np.zeros((len(shaft), 3))
+
+    def about_x(couple: Floats) -> Floats:
+        return couple[:, None] * (1.0, 0.0, 0.0)
+
+    return [
+        _term("engine", "input shaft", car.cg[1], none, about_x(-shaft)),
+        _term("gearbox", "input shaft", car.cg[2], none, about_x(shaft)),
+        _term("engine", "crank inertia", car.cg[1], none, about_x(inertia)),
+    ]
+
+
+def _term(body: str, label: str, at: Floats, force: Floats, moment: Floats | None = None) -> Term:
+    return Term(body=body, label=label, at=at, force=force, moment=np.zeros_like(force) if moment is None else moment)
