@@ -1,0 +1,133 @@
+"""Direct solvers behind one signature: factorise(matrix, ...) gives solve(columns).
+
+The matrix is symmetric positive definite and sparse. "scipy" is always there; "ngsolve" brings a parallel sparse
+Cholesky; "pypardiso" (proprietary, free of charge, the extra `fast`) is the quickest. "auto" takes the first of
+pypardiso, ngsolve, scipy that imports; the one taken is part of the result. None of them may change a result: every
+block of columns is checked by its residual.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from importlib.util import find_spec
+from typing import Any
+
+import numpy as np
+
+from ..arrays import Floats
+from ..errors import SolveError
+from .dissection import dissect
+
+Solve = Callable[[Floats], Floats]
+SOLVERS = ("pypardiso", "ngsolve", "scipy")
+RESIDUAL_LIMIT = 1e-8
+
+
+def choose(solver: str) -> str:
+    """Name of the solver that will be used: the first one installed for "auto"."""
+    if solver == "auto":
+        return next(name for name in SOLVERS if find_spec(name) is not None)
+    if solver not in SOLVERS:
+        raise SolveError("solver", f"{solver!r}", f"auto, {', '.join(SOLVERS)}")
+    if find_spec(solver) is None:
+        raise SolveError("solver", f"{solver} is not installed", "", f"install {solver}, or choose scipy")
+    return solver
+
+
+def factorise(matrix: Any, solver: str, points: Floats) -> Solve:
+    """Factor a symmetric positive definite CSR matrix whose unknown 3·node + component belongs to points (N, 3)."""
+    makers = {"scipy": _scipy, "ngsolve": _ngsolve, "pypardiso": _pypardiso}
+    solve = makers[choose(solver)](matrix, points)
+
+    def checked(columns: Floats) -> Floats:
+        result = solve(columns)
+        gap = residual(matrix, result, columns)
+        if not gap <= RESIDUAL_LIMIT:
+            found = f"the residual of a unit load is {gap:.2g}"
+            raise SolveError("solving the block", found, f"at most {RESIDUAL_LIMIT:g}", "check the mesh for slivers")
+        return result
+
+    return checked
+
+
+def residual(matrix: Any, result: Floats, columns: Floats) -> float:
+    """Largest ratio of a column's residual to its load, by Euclidean norms."""
+    size = np.linalg.norm(columns, axis=0)
+    gap = np.linalg.norm(matrix @ result - columns, axis=0)
+    ratios = gap[size > 0] / size[size > 0]
+    return float(ratios.max()) if ratios.size else float(np.abs(gap).max(initial=0.0))
+
+
+def node_graph(matrix: Any) -> Any:
+    """Graph of the node blocks (N, N) of a matrix with three unknowns per node."""
+    from scipy import sparse
+
+    count = matrix.shape[0] // 3
+    rows = np.repeat(np.arange(matrix.shape[0]) // 3, np.diff(matrix.indptr))
+    ones = np.ones(len(matrix.indices), dtype=np.int8)
+    graph = sparse.coo_array((ones, (rows, matrix.indices // 3)), shape=(count, count)).tocsr()
+    graph.data[:] = 1
+    return graph
+
+
+def _scipy(matrix: Any, points: Floats) -> Solve:
+    from scipy.sparse.linalg import splu
+
+    parts = dissect(node_graph(matrix), points)
+    nodes = np.concatenate([part for part, _ in parts])
+    order = (3 * nodes[:, None] + np.arange(3)).ravel()
+    permuted = matrix[order][:, order].tocsc()
+    options = {"SymmetricMode": True}
+    factor = splu(permuted, permc_spec="NATURAL", diag_pivot_thresh=0.0, options=options)
+
+    def solve(columns: Floats) -> Floats:
+        result = np.empty_like(columns)
+        result[order] = factor.solve(columns[order])
+        return result
+
+    return solve
+
+
+def _ngsolve(matrix: Any, points: Floats) -> Solve:
+    from ngsolve import BitArray, MultiVector, TaskManager  # noqa: F401
+    from ngsolve.la import SparseMatrixd
+    from scipy import sparse
+
+    lower = sparse.tril(matrix).tocoo()
+    size = matrix.shape[0]
+    with TaskManager():
+        entries = SparseMatrixd.CreateFromCOO(
+            lower.coords[0].astype(np.int32), lower.coords[1].astype(np.int32), lower.data, size, size
+        )
+        inverse = entries.Inverse(inverse="sparsecholesky")
+    right, left = entries.CreateColVector(), entries.CreateRowVector()
+
+    def solve(columns: Floats) -> Floats:
+        result = np.empty_like(columns)
+        with TaskManager():
+            for k in range(columns.shape[1]):
+                right.FV().NumPy()[:] = columns[:, k]
+                left.data = inverse * right
+                result[:, k] = left.FV().NumPy()
+        return result
+
+    return solve
+
+
+def _pypardiso(matrix: Any, points: Floats) -> Solve:
+    from pypardiso import PyPardisoSolver
+    from scipy import sparse
+
+    solver = PyPardisoSolver(mtype=2)
+    for entry in range(1, 65):
+        solver.set_iparm(entry, 0)
+    for entry, value in ((1, 1), (2, 3)):
+        solver.set_iparm(entry, value)
+    upper = sparse.csr_matrix(sparse.triu(matrix, format="csr"))
+    solver.factorize(upper)
+
+    def solve(columns: Floats) -> Floats:
+        result: Floats = solver.solve(upper, np.asfortranarray(columns))
+        return result
+
+    return solve
