@@ -13,8 +13,7 @@ import numpy as np
 from ..arrays import Floats
 from ..case.model import Case
 from .bodies import AXLES, Chassis
-from .manoeuvres import Inputs
-from .wheels import DRIVEN
+from .manoeuvres import DRIVEN, Inputs
 from .wrench import wrench
 
 
@@ -35,13 +34,6 @@ def corner_loads(case: Case, inputs: Inputs, frame: Chassis, own: Floats, tyre: 
     resultant = own + wrench(tyre, frame.contact)
     resultant[..., 4] += shaft
     return CornerLoads(resultant=resultant, shaft=shaft)
-
-
-def drive_torque(case: Case, inputs: Inputs, frame: Chassis, along: Floats) -> Floats:
-    """Torque (C,) of all driven wheels from the tyre force along x of each axle (C, 2); 0 while braking."""
-    driven = np.array(DRIVEN[case.drive.axle]) > 0
-    torque: Floats = (along * frame.radius[::2] * driven).sum(axis=-1) * ~inputs.brake
-    return torque
 
 
 def _through_shaft(case: Case, inputs: Inputs) -> Floats:

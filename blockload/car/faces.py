@@ -15,9 +15,25 @@ import numpy as np
 from ..arrays import Floats, frozen
 from ..case.model import FACES, Case
 from ..errors import CaseError
+from .bodies import Chassis
+from .corners import CornerLoads
 from .model import FaceLoads
 from .studs import pattern, rigid_face
-from .wrench import moved
+from .wrench import moved, sealed
+
+
+def chain_loads(loads: Floats, frame: Chassis, corners: CornerLoads, shaft: Floats) -> Floats:
+    """Loads (C, S, 3, 6) on tub, engine and gearbox about the origin, with all that corners and shafts hand on.
+
+    `loads` (C, S, B, 6) act on the bodies themselves; `shaft` (C, S) is the input shaft's couple on the engine.
+    """
+    chain = loads[:, :, :3].copy()
+    for i in range(len(frame.carrier)):
+        chain[:, :, frame.carrier[i]] += corners.resultant[:, :, i]
+        chain[:, :, frame.casing[i], 4] -= corners.shaft[:, :, i]
+    chain[:, :, 1, 3] += shaft
+    chain[:, :, 2, 3] -= shaft
+    return chain
 
 
 def face_loads(case: Case, chain: Floats) -> Mapping[str, FaceLoads]:
@@ -53,7 +69,7 @@ def _face(case: Case, name: str, side: Floats) -> FaceLoads:
         reference=frozen(reference),
         studs=tuple(stud.name for stud in face.studs),
         stud_at=at,
-        wrench=wrench,
-        stud_axial=tension,
-        stud_shear=shear,
+        wrench=sealed(wrench),
+        stud_axial=sealed(tension),
+        stud_shear=sealed(shear),
     )

@@ -12,10 +12,11 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from ..arrays import Floats
+from ..arrays import Floats, frozen
 from ..case.model import CORNERS, Case, Manoeuvre
 from ..errors import CaseError, nearest
 
+DRIVEN = {"front": (1.0, 0.0), "rear": (0.0, 1.0)}  # shares of the driving force on the front and rear axle
 KINDS = ("downforce", "drag", "weight", "inertia", "crank", "crank_inertia", "extra")
 DRIVES = ("hold_speed", "accelerate", "brake", "coast")
 _AT_REST = 1e-9  # m/s^2: an acceleration along x below this counts as none
@@ -49,6 +50,8 @@ def read(case: Case, manoeuvres: Sequence[Manoeuvre]) -> Inputs:
     """Gather manoeuvres into arrays; CaseError for one the balance has no meaning for."""
     if not manoeuvres:
         raise CaseError("[manoeuvres]", "none given", "at least one [manoeuvres.NAME] table", "add one")
+    if case.drive.axle not in DRIVEN:
+        raise CaseError("[drive] axle", repr(case.drive.axle), ", ".join(DRIVEN), nearest(case.drive.axle, DRIVEN))
     for manoeuvre in manoeuvres:
         _check(case, manoeuvre)
     speed = np.array([m.speed for m in manoeuvres], dtype=float)
@@ -59,7 +62,7 @@ def read(case: Case, manoeuvres: Sequence[Manoeuvre]) -> Inputs:
     kept = [_kept(m) for m in manoeuvres]
     return Inputs(
         names=tuple(m.name for m in manoeuvres),
-        speed=speed,
+        speed=frozen(speed),
         pressure=0.5 * case.air_density * speed**2,
         acceleration=np.array([m.acceleration for m in manoeuvres], dtype=float),
         coast=np.array([m.drive == "coast" for m in manoeuvres]),
@@ -100,8 +103,20 @@ def _check(case: Case, manoeuvre: Manoeuvre) -> None:
     for corner in manoeuvre.extra_wheel_force:
         if corner not in CORNERS:
             raise CaseError(f"{where} extra_wheel_force", repr(corner), ", ".join(CORNERS), nearest(corner, CORNERS))
+    _check_crank(case, manoeuvre, where)
+
+
+def _check_crank(case: Case, manoeuvre: Manoeuvre, where: str) -> None:
     if manoeuvre.overall_ratio is not None and not manoeuvre.overall_ratio > 0:
         raise CaseError(f"{where} overall_ratio", f"{manoeuvre.overall_ratio:g}", "a ratio above 0")
+    if manoeuvre.overall_ratio is not None and case.drive.axle == "front":
+        raise CaseError(
+            f"{where} overall_ratio",
+            "given for a car driven at the front",
+            "the engine driving the rear axle",
+            "the shaft from the gearbox to the front axle twists the engine's section and is not modelled; "
+            "leave the ratio out where a motor of its own drives the front axle",
+        )
     if manoeuvre.crank_acceleration and case.drive.crank_inertia is None:
         raise CaseError(
             f"{where} crank_acceleration",

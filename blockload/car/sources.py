@@ -17,11 +17,12 @@ from ..arrays import Floats
 from ..case.model import CARRIERS, CORNERS, Case
 from .aero import device_force
 from .bodies import BODY_SOURCES, Chassis, Masses
+from .crank import inertia_couple
 from .manoeuvres import Inputs
 from .model import BODIES
 from .wrench import wrench
 
-ENGINE, GEARBOX = BODIES.index("engine"), BODIES.index("gearbox")
+ENGINE = BODIES.index("engine")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -49,7 +50,7 @@ def source_names(case: Case, inputs: Inputs) -> tuple[str, ...]:
 
 
 def elementary(case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses, frame: Chassis) -> Elementary:
-    """Elementary loads of every source; the crank's shaft couple waits for the drive torque."""
+    """Elementary loads of every source but the input shaft's couple, which the wheels do not answer."""
     cases, count = len(inputs.names), len(names)
     result = Elementary(
         loads=np.zeros((cases, count, len(BODIES), 6)),
@@ -60,9 +61,7 @@ def elementary(case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses, 
     )
     _add_devices(result, case, inputs, car)
     _add_bodies(result, case, inputs, names, car)
-    if case.drive.crank_inertia is not None:
-        couple = -case.drive.crank_direction * case.drive.crank_inertia * inputs.crank_rate
-        result.loads[:, names.index("crank_inertia"), ENGINE, 3] = couple * inputs.keep["crank_inertia"]
+    result.loads[:, names.index("crank_inertia"), ENGINE, 3] = inertia_couple(case, inputs)
     _add_extras(result, inputs, names, car, frame)
     return result
 

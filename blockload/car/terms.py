@@ -8,14 +8,17 @@ from __future__ import annotations
 
 import numpy as np
 
-from ..arrays import Floats
+from ..arrays import Floats, frozen
 from ..case.model import CORNERS, Case
 from .aero import device_force
 from .bodies import Chassis, Masses
 from .corners import CornerLoads
 from .manoeuvres import Inputs
 from .model import BODIES, FaceLoads, Term
-from .wrench import moved
+from .wrench import moved, sealed
+
+FACE_LABELS = ("front face", "rear face")
+CRANK_LABELS = ("input shaft", "crank inertia")
 
 
 def body_terms(case: Case, inputs: Inputs, car: Masses, motion: Floats) -> list[Term]:
@@ -57,27 +60,28 @@ def wheel_terms(frame: Chassis, wheel_force: Floats, corners: CornerLoads) -> li
 def face_terms(front: FaceLoads, rear: FaceLoads) -> list[Term]:
     """Each face on both bodies it joins."""
     result = []
-    for face, other in ((front, "tub"), (rear, "gearbox")):
+    for face, other, label in zip((front, rear), ("tub", "gearbox"), FACE_LABELS, strict=True):
         wrench = face.wrench.sum(axis=1)
-        label = f"{face.name} face"
         result.append(_term("engine", label, face.reference, wrench[:, :3], wrench[:, 3:]))
         result.append(_term(other, label, face.reference, -wrench[:, :3], -wrench[:, 3:]))
     return result
 
 
 def crank_terms(car: Masses, shaft: Floats, inertia: Floats) -> list[Term]:
-    """Input-shaft couple (C,) about x on engine and gearbox, and the crank's inertia couple (C,) on the engine."""
+    """Couples (C,) about x: the input shaft's on the engine and its reverse on the gearbox; the crank's inertia."""
     none = np.zeros((len(shaft), 3))
 
     def about_x(couple: Floats) -> Floats:
         return couple[:, None] * (1.0, 0.0, 0.0)
 
+    torque, rate = CRANK_LABELS
     return [
-        _term("engine", "input shaft", car.cg[1], none, about_x(-shaft)),
-        _term("gearbox", "input shaft", car.cg[2], none, about_x(shaft)),
-        _term("engine", "crank inertia", car.cg[1], none, about_x(inertia)),
+        _term("engine", torque, car.cg[1], none, about_x(shaft)),
+        _term("gearbox", torque, car.cg[2], none, about_x(-shaft)),
+        _term("engine", rate, car.cg[1], none, about_x(inertia)),
     ]
 
 
 def _term(body: str, label: str, at: Floats, force: Floats, moment: Floats | None = None) -> Term:
-    return Term(body=body, label=label, at=at, force=force, moment=np.zeros_like(force) if moment is None else moment)
+    couple = np.zeros_like(force) if moment is None else moment
+    return Term(body=body, label=label, at=frozen(at), force=sealed(force), moment=sealed(couple))

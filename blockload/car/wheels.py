@@ -17,13 +17,13 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from ..arrays import Floats
 from ..case.model import Case
 from ..errors import CaseError
-from .manoeuvres import Inputs
-
-DRIVEN = {"front": (1.0, 0.0), "rear": (0.0, 1.0), "all": (0.5, 0.5)}
+from .manoeuvres import DRIVEN, Inputs
+from .sources import Elementary
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -36,12 +36,39 @@ class AxleLoads:
     roll: Floats
 
 
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class TyreForces:
+    """What the tyres answer.
+
+    force (C, S, 4, 3), extra wheel forces apart; along (C, 2): the whole manoeuvre's force along x of each axle;
+    lifted (C, 4): wheels whose load, extra forces included, is below zero in the whole manoeuvre.
+    """
+
+    force: Floats
+    along: Floats
+    lifted: NDArray[np.bool_]
+
+
+def tyre_answer(case: Case, inputs: Inputs, loads: Elementary, whole: Elementary) -> TyreForces:
+    """What the tyres answer to every source of `loads`, shared within the axles as `whole` (all parts) is."""
+    shares = axle_shares(case, inputs)
+    totals = axle_loads(case, whole.loads.sum(axis=(1, 2)), whole.unsprung.sum(axis=1), shares)
+    _refuse_pushing_brakes(case, inputs, totals)
+    left = left_shares(case, totals)
+    answer = axle_loads(case, loads.loads.sum(axis=2), loads.unsprung, shares[:, None])
+    standing = wheel_forces(case, totals, left) + whole.contact.sum(axis=1)
+    return TyreForces(
+        force=wheel_forces(case, answer, left[:, None]),
+        along=totals.along,
+        lifted=standing[..., 2] < 0,
+    )
+
+
 def axle_shares(case: Case, inputs: Inputs) -> Floats:
     """Shares (C, 2) of the longitudinal tyre force on the front and rear axle."""
-    if case.drive.axle not in DRIVEN:
-        raise CaseError("[drive] axle", repr(case.drive.axle), ", ".join(DRIVEN))
     front = case.drive.brake_front_share
-    return np.where(inputs.brake[:, None], (front, 1.0 - front), DRIVEN[case.drive.axle])
+    result: Floats = np.where(inputs.brake[:, None], (front, 1.0 - front), DRIVEN[case.drive.axle])
+    return result
 
 
 def axle_loads(case: Case, wrenches: Floats, unsprung: Floats, shares: Floats) -> AxleLoads:
@@ -85,6 +112,21 @@ def wheel_forces(case: Case, loads: AxleLoads, left: Floats) -> Floats:
     along = np.stack([loads.along / 2, loads.along / 2], axis=-1)
     result = np.stack([along, lateral, _side_loads(case, loads)], axis=-1)
     return result.reshape(*result.shape[:-3], 4, 3)
+
+
+def _refuse_pushing_brakes(case: Case, inputs: Inputs, totals: AxleLoads) -> None:
+    push = totals.along.sum(axis=-1)
+    wrong = inputs.brake & (push > 1e-9 * np.abs(totals.vertical).sum(axis=-1))
+    if not wrong.any():
+        return
+    c = int(np.flatnonzero(wrong)[0])
+    raise CaseError(
+        f"[manoeuvres.{inputs.names[c]}] drive",
+        f'"brake" at {inputs.acceleration[c, 0]:g} m/s^2, where drag alone slows the car more and the tyres would have '
+        f"to push forward with {push[c] / 1e3:.3g} kN",
+        "a deceleration beyond that of drag alone",
+        'set drive = "accelerate" (the tyres push), or "coast"',
+    )
 
 
 def _side_loads(case: Case, loads: AxleLoads) -> Floats:

@@ -8,6 +8,12 @@ from numpy.typing import ArrayLike
 from ..arrays import Floats
 
 
+def sealed(array: Floats) -> Floats:
+    """The array itself, made read-only: for one that was made here and is known to nobody else."""
+    array.flags.writeable = False
+    return array
+
+
 def wrench(force: ArrayLike, at: ArrayLike, about: ArrayLike = (0.0, 0.0, 0.0)) -> Floats:
     """Wrench (..., 6) about a point of a force (..., 3) acting at another."""
     force = np.asarray(force, dtype=float)
