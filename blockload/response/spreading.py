@@ -13,6 +13,7 @@ import numpy as np
 from ..arrays import Floats, Ints
 from ..block.model import Attachment, Block
 from ..errors import BlockError
+from .elements import EDGES, Bools
 
 SPREAD_ORDER = 8
 CHECK_ORDER = 6
@@ -27,15 +28,15 @@ def facet_nodes(block: Block, facets: Ints) -> Ints:
     nodes = mesh.dofs.element_dofs[:, elements]
     local = np.stack([(nodes[:4] == corner).argmax(axis=0) for corner in corners])
     middle_of = np.zeros((4, 4), dtype=np.int64)
-    for k, (i, j) in enumerate(((0, 1), (1, 2), (0, 2), (0, 3), (1, 3), (2, 3))):
+    for k, (i, j) in enumerate(EDGES):
         middle_of[i, j] = middle_of[j, i] = 4 + k
     columns = np.arange(len(elements))
     middles = [nodes[middle_of[local[i], local[j]], columns] for i, j in _EDGE_OF_CORNERS]
     return np.stack([*corners, *middles], axis=1).astype(np.int64)
 
 
-def unit_wrenches(block: Block, attachment: Attachment) -> tuple[Floats, Ints, Floats]:
-    """Nodal loads of six unit wrenches about the attachment's centroid.
+def unit_wrenches(block: Block, attachment: Attachment, part: Bools | None = None) -> tuple[Floats, Ints, Floats]:
+    """Nodal loads of six unit wrenches about the attachment's centroid, or what `part` (f,) of its facets takes.
 
     Returns the loads (k, 3, 6) [N per N, N per N·m], the nodes (k,) they act on, and the wrenches (6, 6) found by
     integrating the same tractions again with another quadrature (the identity where the facets are flat).
@@ -50,6 +51,8 @@ def unit_wrenches(block: Block, attachment: Attachment) -> tuple[Floats, Ints, F
     coefficients = np.linalg.inv(moments)
     traction = _traction_basis(arm) @ coefficients
     nodal = np.einsum("qa,fqik,fq->faik", shape, traction, area)
+    if part is not None:
+        nodes, nodal = nodes[part], nodal[part]
     used, inverse = np.unique(nodes, return_inverse=True)
     loads = np.zeros((len(used), 3, 6))
     np.add.at(loads, inverse.reshape(nodes.shape), nodal)
@@ -96,4 +99,5 @@ def _scaled(moments: Floats) -> Floats:
     """The 6×6 system in units of its own radius, so that its condition means shape and not size."""
     radius = np.sqrt(np.trace(moments[3:, 3:]) / max(3 * moments[0, 0], np.finfo(float).tiny))
     scale = np.array([1.0] * 3 + [1.0 / max(radius, np.finfo(float).tiny)] * 3)
-    return moments * scale[:, None] * scale / max(moments[0, 0], np.finfo(float).tiny)
+    result: Floats = moments * scale[:, None] * scale / max(moments[0, 0], np.finfo(float).tiny)
+    return result
