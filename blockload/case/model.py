@@ -66,11 +66,36 @@ class Axle:
     corner: Body
     links: Mapping[str, Link] = field(default_factory=dict)
     rocker: Rocker | None = None
+    ride_height: float | None = None
+    ride_stiffness: float | None = None
+    tyre_stiffness: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class AeroMap:
+    """One device's aero over a full grid, per dynamic pressure: force [m²] and moment [m³] of the air on the car.
+
+    `grid` holds the rising values of each of `axes` that the map varies over: speed m/s, ride heights m, yaw and
+    steer rad; an axis left out makes no difference. `values` (K, n_1, ..., n_k, 9) holds, for each named state,
+    force, moment about the reference point, and reference point [m] ("nan" where the file gives none and the
+    device's own `at` stands), in the car's axes. `default_state` is the state of a manoeuvre that names none.
+    """
+
+    source: str
+    axes: tuple[str, ...]
+    grid: tuple[Floats, ...]
+    states: tuple[str, ...]
+    default_state: str | None
+    values: Floats
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Device:
-    """An aero element acting at a point (3,) of one body; areas are Cz·A (+ down) and Cx·A (+ drag) in m²."""
+    """An aero element acting at a point (3,) of one body; areas are Cz·A (+ down) and Cx·A (+ drag) in m².
+
+    With `table` the areas stand unused: its values over ride height, yaw and so on count instead, and `outside`
+    says what happens beyond its grid: "refuse", or "clamp" to its edge and mark the load case.
+    """
 
     name: str
     on: str
@@ -79,16 +104,19 @@ class Device:
     drag_area: float
     attachment: str | None = None
     map: Path | None = None
+    table: AeroMap | None = None
+    outside: str = "refuse"
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class AeroTotal:
-    """The whole car's downforce [N] at a speed [m/s], and the front share by a stated convention."""
+    """The whole car's downforce and drag [N] at a speed [m/s], and the front share by a stated convention."""
 
     downforce: float
     at_speed: float
     front_share: float
     share_includes_drag_moment: bool
+    drag: float | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -141,6 +169,7 @@ class Manoeuvre:
 
     `acceleration` (3,) is that of the car's CG; `extra_wheel_force` maps a corner to a force (3,) at its contact
     point and makes this a force-mode manoeuvre. `parts` keeps only these kinds of source (None: all).
+    `yaw` and `steer` [rad] and the named `state` are where aero maps are read.
     """
 
     name: str
@@ -152,6 +181,9 @@ class Manoeuvre:
     extra_wheel_force: Mapping[str, Floats] = field(default_factory=dict)
     parts: tuple[str, ...] | None = None
     basis: str | None = None
+    yaw: float = 0.0
+    steer: float = 0.0
+    state: str | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -307,6 +339,7 @@ class Case:
     bounds: tuple[Bound, ...]
     defaults: tuple[Default, ...]
     checks: tuple[Check, ...]
+    aero_split: tuple[Device, ...] = ()
 
     @property
     def wheelbase(self) -> float:
