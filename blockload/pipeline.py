@@ -6,12 +6,16 @@ needs them, so that reading and balancing stay instant.
 
 from __future__ import annotations
 
+import os
+import platform
 import uuid
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass, replace
+from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
+from . import __version__
 from .car.balance import balance
 from .case.reading import read, replaced
 
@@ -24,6 +28,20 @@ if TYPE_CHECKING:
     from .response.model import Library
 
 Progress = Callable[[str, float], None]
+
+PACKAGES = (
+    "numpy",
+    "scipy",
+    "scikit-fem",
+    "meshio",
+    "netgen-mesher",
+    "ngsolve",
+    "pypardiso",
+    "pyvista",
+    "pydantic",
+    "pint",
+    "typer",
+)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -144,4 +162,29 @@ def _ends(case: Case, bound: Bound) -> Iterator[Case]:
         yield replace(changed, bounds=())
 
 
-__all__ = ["Run", "check", "loads"]
+def results_of(path: Path) -> dict[str, Any]:
+    """Return the results of a run's folder, or of a case file checked here and now without writing anything."""
+    if path.is_dir():
+        from .report.verifying import read_results
+
+        return read_results(path)
+    from .report.results import results
+
+    run = check(path)
+    return results(run.case, run.cases, run.block, run.library, run.pads, run.margins, run_id=run.run_id)
+
+
+def environment() -> dict[str, str]:
+    """Return versions, solvers, cores and the cache folder: what a question about a run should come with."""
+    from .response import factor, store
+
+    found = {"blockload": __version__, "python": platform.python_version(), "system": platform.platform()}
+    for package in PACKAGES:
+        try:
+            found[package] = version(package)
+        except PackageNotFoundError:
+            found[package] = "not installed"
+    found["solvers"] = ", ".join(factor.available())
+    found["cores"] = str(os.cpu_count())
+    found["cache"] = str(store.folder())
+    return found
