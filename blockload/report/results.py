@@ -19,7 +19,6 @@ from .. import __version__
 from ..car.model import BODIES, SECTION, LoadCases, Term
 from ..case.model import CORNERS, Case
 from .files import write_beside
-from .tables import friction_used
 
 if TYPE_CHECKING:
     from ..block.model import Block
@@ -28,6 +27,7 @@ if TYPE_CHECKING:
     from ..response.model import Library
 
 FORMAT = "blockload.results/1"
+_ROUNDING = 1e-9  # of the largest sum of magnitudes: what is below it is rounding, not load
 STIFFNESS_KEYS = ("torsion_Nm_per_rad", "bending_vertical_Nm_per_rad", "bending_lateral_Nm_per_rad")
 
 
@@ -98,7 +98,7 @@ def results(
 
 def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
     """Return one load case as it is written, its residual summed again from the written numbers."""
-    wheels, used = cases.wheels[index], friction_used(cases.wheels[index])
+    wheels, used = cases.wheels[index], cases.friction_used[index]
     written = {
         "speed": cases.speed[index],
         "downforce": cases.downforce[index],
@@ -136,14 +136,13 @@ def reassembled_residual(data: Mapping[str, Any]) -> float:
         Largest of |ΣF| / Σ|F| and |ΣM| / Σ|M| over the bodies; moments about the car's origin.
 
     """
-    worst = 0.0
-    for lines in data["free_bodies"].values():
-        wrenches = np.array([_wrench(line, data) for line in lines]).reshape(-1, 2, 3)
-        left = np.linalg.norm(wrenches.sum(axis=0), axis=1)
-        size = np.linalg.norm(wrenches, axis=2).sum(axis=0)
-        shares = left[size > 0] / size[size > 0]
-        worst = max(worst, float(shares.max(initial=0.0)))
-    return worst
+    bodies = [
+        np.array([_wrench(line, data) for line in lines]).reshape(-1, 2, 3) for lines in data["free_bodies"].values()
+    ]
+    left = np.array([np.linalg.norm(lines.sum(axis=0), axis=1) for lines in bodies])
+    size = np.array([np.linalg.norm(lines, axis=2).sum(axis=0) for lines in bodies])
+    floor = _ROUNDING * size.max(initial=0.0)
+    return float(np.divide(left, np.maximum(size, floor), out=np.zeros_like(left), where=size > 0).max(initial=0.0))
 
 
 def _wrench(line: Mapping[str, Any], data: Mapping[str, Any]) -> np.ndarray[Any, Any]:

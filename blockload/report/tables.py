@@ -8,7 +8,6 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from ..arrays import Floats
 from ..car.model import BODIES, SECTION, LoadCases
 from ..case.model import CORNERS, Case, Check
 from ..margins.model import Margin, Margins
@@ -79,7 +78,7 @@ def load_case_summary(cases: LoadCases) -> Table:
 def wheel_loads(cases: LoadCases) -> Table:
     """Vertical wheel loads and the friction the hardest-worked tyre uses."""
     wheels = cases.wheels
-    used = friction_used(wheels)
+    used = cases.friction_used
     rows = []
     for i, name in enumerate(cases.names):
         worst = int(np.nanargmax(used[i])) if np.isfinite(used[i]).any() else None
@@ -91,7 +90,7 @@ def wheel_loads(cases: LoadCases) -> Table:
 
 def wheel_forces(cases: LoadCases) -> Table:
     """All three components at every wheel."""
-    wheels, used = cases.wheels, friction_used(cases.wheels)
+    wheels, used = cases.wheels, cases.friction_used
     rows = [
         (plain_name(name), CORNERS[k], *(fixed(f, 2, scale=1e3) for f in wheels[i, k]), fixed(used[i, k], 2))
         for i, name in enumerate(cases.names)
@@ -101,13 +100,6 @@ def wheel_forces(cases: LoadCases) -> Table:
         "kN, road on tyre, at the contact point; x forward, y left, z up. No value where the wheel is not pressed down."
     )
     return table("Wheel forces", ("load case", "wheel", "F_x", "F_y", "F_z", "friction used"), rows, note)
-
-
-def friction_used(wheels: Floats) -> Floats:
-    """Return √(Fx² + Fy²)/Fz (C, 4); nan where the wheel is not pressed down."""
-    vertical = np.where(wheels[..., 2] > 0, wheels[..., 2], np.nan)
-    used: Floats = np.hypot(wheels[..., 0], wheels[..., 1]) / vertical
-    return used
 
 
 def section_wrenches(cases: LoadCases, indices: Iterable[int] | None = None) -> Table:

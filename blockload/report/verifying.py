@@ -21,15 +21,20 @@ def read_results(folder: Path) -> dict[str, Any]:
     ------
     CaseError
         Where the folder holds no whole run.
+
     """
     path = folder / "results.json"
     remedy = "name the folder given to 'blockload check --output'"
     try:
         data = json.loads(path.read_text(encoding="utf-8"))
     except OSError as error:
-        raise CaseError(str(path), f"cannot be read ({error.strerror})", "the folder of a finished run", remedy) from error
+        raise CaseError(
+            str(path), f"cannot be read ({error.strerror})", "the folder of a finished run", remedy
+        ) from error
     except ValueError as error:
-        raise CaseError(str(path), f"is damaged ({error})", "the file as it was written", "run the check again") from error
+        raise CaseError(
+            str(path), f"is damaged ({error})", "the file as it was written", "run the check again"
+        ) from error
     if not isinstance(data, dict) or data.get("format") != "blockload.results/1":
         raise CaseError(str(path), "is not a result of this format", "blockload.results/1", remedy)
     return data

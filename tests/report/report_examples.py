@@ -1,4 +1,4 @@
-"""Small frozen values the report's tests draw: an invented car in rigid balance, margins, a block of two tetrahedra."""
+"""Small frozen values the report's tests draw: an invented car and what might be judged of it."""
 
 from __future__ import annotations
 
@@ -8,9 +8,9 @@ from pathlib import Path
 import numpy as np
 
 from blockload.arrays import frozen
-from blockload.car.model import FaceLoads, LoadCases, Term
+from blockload.car.balance import balance
+from blockload.car.model import LoadCases
 from blockload.case.model import (
-    CORNERS,
     Axle,
     Body,
     Bound,
@@ -110,7 +110,12 @@ def example_case(**changes) -> Case:
         engine=Engine(),
         tyre_friction=1.7,
         faces={"front": face("front", -1.5, FRONT), "rear": face("rear", -2.12, REAR)},
-        manoeuvres=(Manoeuvre(name="static", acceleration=frozen((0, 0, 0))),),
+        manoeuvres=(
+            Manoeuvre(name="static", acceleration=frozen((0, 0, 0))),
+            Manoeuvre(name="v_max", speed=75.0, acceleration=frozen((0, 0, 0)), overall_ratio=4.5),
+            Manoeuvre(name="corner_left", speed=60.0, acceleration=frozen((0, 20, 0)), overall_ratio=5.0),
+            Manoeuvre(name="downforce_only", speed=75.0, acceleration=frozen((0, 0, 0)), parts=("downforce",)),
+        ),
         block=None,
         installation=Installation(pad_stiffness=(), pad_stiffness_given=False, tub=None, second_paths="none"),
         paths=(),
@@ -136,143 +141,9 @@ def example_case(**changes) -> Case:
     return replace(made, **changes)
 
 
-CASES = (
-    ("static", 0.0, (0.0, 0.0, 0.0)),
-    ("v_max", 75.0, (0.0, 0.0, 0.0)),
-    ("corner_left", 60.0, (0.0, 20.0, 0.0)),
-)
-
-
 def example_cases(case: Case | None = None) -> LoadCases:
-    """The example car in rigid balance, worked here in a few lines so that every body closes by itself."""
-    case = case or example_case()
-    count = len(CASES)
-    corners = {
-        name: (
-            case.axles[end].corner.mass,
-            case.axles[end].corner.cg * (1, side, 1),
-            np.array([case.axles[end].x, side * case.axles[end].track / 2, 0.0]),
-            case.axles[end].carried_by,
-        )
-        for name, end, side in (("FL", "front", 1), ("FR", "front", -1), ("RL", "rear", 1), ("RR", "rear", -1))
-    }
-    masses = {name: (item.mass, item.cg) for name, item in case.bodies.items()}
-    masses |= {name: item[:2] for name, item in corners.items()}
-    wheels = np.zeros((count, 4, 3))
-    terms: list[Term] = []
-    aero = {}
-    for item in case.devices:
-        force = np.array(
-            [[-0.5 * 1.2 * v**2 * item.drag_area, 0, -0.5 * 1.2 * v**2 * item.downforce_area] for _, v, _ in CASES]
-        )
-        aero[item.name] = (item.on, item.at, force)
-    for i, (_, _, acceleration) in enumerate(CASES):
-        wheels[i] = _wheels(masses, corners, aero, np.array(acceleration), i)
-
-    def add(name, label, at, force, moment=None):
-        moment = np.zeros((count, 3)) if moment is None else moment
-        at, force = frozen(at), np.broadcast_to(np.asarray(force, float), (count, 3))
-        terms.append(Term(body=name, label=label, at=at, force=frozen(force.copy()), moment=frozen(moment)))
-
-    accelerations = np.array([a for *_, a in CASES])
-    for name, (mass, cg) in masses.items():
-        add(name, "weight", cg, (0, 0, -mass * GRAVITY))
-        add(name, "inertia", cg, -mass * accelerations)
-    for name, (on, at, force) in aero.items():
-        add(on, name, at, force)
-    for k, (name, (_, cg, contact, carrier)) in enumerate(corners.items()):
-        add(name, "road on tyre", contact, wheels[:, k])
-        force, moment = _sums(terms, name, cg)
-        add(name, f"from the {carrier}", cg, -force, -moment)
-        add(carrier, f"corner {name}", cg, force, moment)
-    faces = {}
-    # An open differential's drive goes through the corners, so the studs close each body in turn from behind.
-    for label, behind, ahead in (("rear", "gearbox", "engine"), ("front", "engine", "tub")):
-        spec = case.faces[label]
-        at = np.array([[spec.x, *stud.at] for stud in spec.studs])
-        centroid = at.mean(axis=0)
-        force, moment = _sums(terms, behind, centroid)
-        add(behind, f"studs of the {label} face", centroid, -force, -moment)
-        add(ahead, f"studs of the {label} face", centroid, force, moment)
-        on_engine = np.concatenate([force, moment], axis=1) * (1.0 if label == "rear" else -1.0)
-        axial, shear = _studs(at - centroid, on_engine, 1.0 if label == "front" else -1.0)
-        faces[label] = FaceLoads(
-            name=label,
-            reference=frozen(centroid),
-            studs=tuple(stud.name for stud in spec.studs),
-            stud_at=frozen(at),
-            wrench=_split(on_engine),
-            stud_axial=_split(axial),
-            stud_shear=_split(shear),
-        )
-    q = np.array([0.5 * 1.2 * v**2 for _, v, _ in CASES])
-    zeros = np.zeros((count, 2, 3))
-    return LoadCases(
-        names=tuple(name for name, *_ in CASES),
-        sources=("aero", "weight and inertia"),
-        speed=frozen([v for _, v, _ in CASES]),
-        downforce=frozen(q * sum(d.downforce_area for d in case.devices)),
-        drag=frozen(q * sum(d.drag_area for d in case.devices)),
-        acceleration=_split(accelerations),
-        angular_acceleration=frozen(zeros),
-        engine_acceleration=_split(accelerations + np.array([0, 0, GRAVITY])),
-        wheel_force=_split(wheels),
-        crank_torque=frozen([np.nan] * count),
-        crank_couple=frozen(np.zeros((count, 2))),
-        faces={"front": faces["front"], "rear": faces["rear"]},
-        engine_loads=(),
-        terms=tuple(terms),
-        residual=frozen([1e-16] * count),
-        front_rear_gap=frozen([1e-15] * count),
-        omega_squared=frozen([0.0, 0.0, 0.11]),
-    )
-
-
-def _wheels(masses, corners, aero, acceleration, index):
-    """Vertical loads with half the couple at each axle; lateral by load at each axle; drag taken by the rear tyres."""
-    contacts = np.array([corners[name][2] for name in CORNERS])
-    force, moment = np.zeros(3), np.zeros(3)
-    for mass, cg in masses.values():
-        load = -mass * (acceleration + np.array([0, 0, GRAVITY]))
-        force, moment = force + load, moment + np.cross(cg, load)
-    for _, at, load in aero.values():
-        force, moment = force + load[index], moment + np.cross(at, load[index])
-    rear_x = contacts[2, 0]
-    rear = moment[1] / rear_x
-    front = -force[2] - rear
-    couple = -moment[0] / 2
-    wheels = np.zeros((4, 3))
-    for pair, load in ((slice(0, 2), front), (slice(2, 4), rear)):
-        track = contacts[pair][0, 1] - contacts[pair][1, 1]
-        wheels[pair, 2] = load / 2 + np.array([1, -1]) * couple / track
-    side_rear = -moment[2] / rear_x
-    yaw_drag = -force[0] / 2
-    wheels[2:, 0] = yaw_drag
-    for pair, side in ((slice(0, 2), -force[1] - side_rear), (slice(2, 4), side_rear)):
-        wheels[pair, 1] = side * wheels[pair, 2] / wheels[pair, 2].sum()
-    return wheels
-
-
-def _sums(terms, name, about):
-    mine = [term for term in terms if term.body == name]
-    force = sum(term.force for term in mine)
-    moment = sum(term.moment + np.cross(term.at - about, term.force) for term in mine)
-    return force, moment
-
-
-def _studs(offset, wrench, sign):
-    y, z = offset[:, 1], offset[:, 2]
-    matrix = np.array([[(z * z).sum(), (y * z).sum()], [(y * z).sum(), (y * y).sum()]])
-    slopes = np.linalg.solve(matrix, np.stack([wrench[:, 4], -wrench[:, 5]]))
-    axial = wrench[:, :1] / len(y) + slopes[0][:, None] * z + slopes[1][:, None] * y
-    turn = wrench[:, 3] / (y @ y + z @ z)
-    shear = wrench[:, None, 1:3] / len(y) + turn[:, None, None] * np.stack([-z, y], axis=1)
-    return sign * axial, shear
-
-
-def _split(values):
-    """Share a value over the two sources of the example."""
-    return frozen(np.stack([0.25 * values, 0.75 * values], axis=1))
+    """The example car's load cases, balanced."""
+    return balance(case or example_case())
 
 
 def margin(criterion="stud separation", place="front TL", value=0.26, **changes) -> Margin:
