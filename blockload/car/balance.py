@@ -77,7 +77,7 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
         residual=sealed(residual.max(axis=1)),
         front_rear_gap=sealed(front_rear_gap(chain)),
         omega_squared=_turning(inputs),
-        wheel_lift=frozen(tyres.lifted, bool),
+        wheel_lift=frozen(tyres.lifted.any(axis=1), bool),
     )
 
 

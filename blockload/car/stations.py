@@ -61,8 +61,9 @@ def _share_behind(cases: LoadCases, term: Term, x: Floats) -> Floats:
     """Share (C or 1, X) of a load that acts behind each station."""
     front, rear = cases.faces["front"].reference[0], cases.faces["rear"].reference[0]
     if term.body == "engine" and term.label in CRANK_LABELS:
-        return np.clip((x - rear) / (front - rear), 0.0, 1.0)[None]
-    return (_entry(cases, term)[:, None] < x).astype(float)
+        ramp: Floats = np.clip((x - rear) / (front - rear), 0.0, 1.0)
+        return ramp[None]
+    return np.where(_entry(cases, term)[:, None] < x, 1.0, 0.0)
 
 
 def _entry(cases: LoadCases, term: Term) -> Floats:

@@ -103,7 +103,8 @@ def left_shares(case: Case, totals: AxleLoads) -> Floats:
     both = load.sum(axis=-1)
     carried = both > 1e-9 * np.abs(totals.vertical).sum(axis=-1, keepdims=True)
     share = np.divide(load[..., 0], both, out=np.full_like(both, 0.5), where=carried)
-    return np.clip(share, 0.0, 1.0)
+    clipped: Floats = np.clip(share, 0.0, 1.0)
+    return clipped
 
 
 def wheel_forces(case: Case, loads: AxleLoads, left: Floats) -> Floats:
