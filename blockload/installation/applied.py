@@ -37,6 +37,7 @@ def known_wrenches(cases: LoadCases, block: Block, library: Library, case: Case)
     ------
     CaseError
         Where a load acts on the engine and no attachment of the block is named for it.
+
     """
     count, sources = cases.crank_couple.shape
     wrenches = np.zeros((count, sources, 6 * len(library.attachments)))
@@ -62,6 +63,7 @@ def find_attachment(block: Block, name: str | None, what: str) -> Attachment:
     ------
     CaseError
         Where the block has none of this name.
+
     """
     matches = [item for item in block.attachments if item.name == name]
     if matches:

@@ -31,6 +31,7 @@ def stiffness_variants(installation: Installation) -> tuple[tuple[str, float, fl
     ------
     CaseError
         Where no stiffness is known or one is not positive.
+
     """
     entries = installation.pad_stiffness
     if not entries:
@@ -78,6 +79,7 @@ def pad_compliance(pad: Attachment, normal: float, tangential: float) -> Floats:
     ------
     SolveError
         Where the pad's facets have no extent across some axis, so that it has no rotational stiffness.
+
     """
     stiffness = pad_stiffness(pad, normal, tangential)
     rotation = np.linalg.eigvalsh(stiffness[3:, 3:])
@@ -88,5 +90,4 @@ def pad_compliance(pad: Attachment, normal: float, tangential: float) -> Floats:
             "a pad with area",
             f"check the face sets {', '.join(pad.sets)}",
         )
-    compliance: Floats = np.linalg.inv(stiffness)
-    return compliance
+    return np.asarray(np.linalg.inv(stiffness), dtype=np.float64)

@@ -39,8 +39,8 @@ def install(
 
     Parameters
     ----------
-    cases : LoadCases
-    block : Block
+    cases, block : LoadCases, Block
+        The balanced car, and the block with its attachments and carried masses.
     library : Library
         The unit responses of this block.
     case : Case
@@ -54,6 +54,7 @@ def install(
         Where the pads leave a rigid motion free; the message names it.
     CaseError
         Where a load has no attachment, a pad no stiffness, or a volume is not in the block.
+
     """
     wrenches = known_wrenches(cases, block, library, case)
     inertia = inertia_wrench(cases, case, mass=block.mass, cg=block.cg, inertia=block.inertia, about=ORIGIN)

@@ -56,6 +56,7 @@ def add_tub(compliance: Floats, tub: Floats, count: int) -> None:
     ------
     CaseError
         Where the matrix has another size, is not symmetric, or does not hold the block.
+
     """
     where = "[installation] tub"
     if tub.shape != (3 * count, 3 * count):
@@ -104,6 +105,7 @@ def nearest_attachment(block: Block, at: Floats, where: str) -> Attachment:
     ------
     CaseError
         Where the nearest is farther away than REACH.
+
     """
     points, facets = block.mesh.p.T, block.mesh.facets
     gaps = [

@@ -35,7 +35,7 @@ class Proof:
 
 def proofs(weights: Floats, path_force: Floats, cases: LoadCases, block: Block, library: Library, case: Case) -> Proof:
     """Measure the laws of the module docstring on the solved weights (P, C, S, U)."""
-    gaps = [_face_gap(weights, path_force, cases, block, library, case, face) for face in ("front", "rear")]
+    gaps = {face: _face_gap(weights, path_force, cases, block, library, case, face) for face in ("front", "rear")}
     relief = rigid_acceleration(weights, library)
     wanted = np.concatenate([acceleration_at(cases, case, block.cg), cases.angular_acceleration], axis=-1)
     wanted = np.pad(wanted, ((0, 0), (0, relief.shape[2] - wanted.shape[1]), (0, 0)))
@@ -44,9 +44,11 @@ def proofs(weights: Floats, path_force: Floats, cases: LoadCases, block: Block, 
     off = np.abs(relief - wanted) * [1.0, 1.0, 1.0, arm, arm, arm]
     return Proof(
         relief=relief.mean(axis=0),
-        sum_gap=max(gaps),
+        sum_gap=max(gaps.values()),
         relief_gap=float(off.max() / max(size, TINY)),
         checks={
+            "sum front": gaps["front"],
+            "sum rear": gaps["rear"],
             "mass": abs(block.mass / library.mass - 1.0),
             "cg": float(np.abs(block.cg - library.cg).max() / arm),
             "inertia": float(np.abs(block.inertia - library.inertia).max() / np.abs(library.inertia).max()),

@@ -64,6 +64,7 @@ def solve(
     Parameters
     ----------
     connections : Connections
+        What joins the block to tub and gearbox.
     flexibility, modes : array, shape (6A, 6A) and (6A, 6)
         F and Φ of the block's attachments.
     wrenches : array, shape (6A, k)
@@ -72,6 +73,7 @@ def solve(
         Free motion of the attachments (heat).
     block_load, gearbox_load : array, shape (6, k)
         What else acts on block and gearbox, about the car's origin.
+
     """
     H, Hg, c = connections.on_block, connections.on_gearbox, connections.compliance.shape[0]
     refuse_mechanism(connections, modes)
@@ -119,6 +121,7 @@ def refuse_mechanism(connections: Connections, modes: Floats) -> None:
     ------
     SolveError
         With the motion that nothing holds.
+
     """
     held = connections.holding.astype(bool)
     seen = np.hstack([connections.on_block.T @ modes, connections.on_gearbox.T])[held]

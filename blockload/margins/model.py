@@ -82,7 +82,10 @@ class SurfaceMargins:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Margins:
-    """Everything judged in one run."""
+    """Everything judged in one run.
+
+    rear_face: how far the gearbox's flange moves against the tub per load case, translation [m] then rotation [rad].
+    """
 
     margins: tuple[Margin, ...]
     checks: tuple[Check, ...]
@@ -91,3 +94,4 @@ class Margins:
     stiffness: Mapping[str, float] = field(default_factory=dict)
     requirements: Mapping[str, Mapping[str, float]] = field(default_factory=dict)
     movements: tuple[Movement, ...] = ()
+    rear_face: Mapping[str, tuple[float, ...]] = field(default_factory=dict)

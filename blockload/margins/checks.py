@@ -1,0 +1,148 @@
+"""What is measured on every run and can fail: loads, library, installation and the field inside the block.
+
+Each check has a limit that a right analysis meets by orders of magnitude: the balance of loads 1e-6, identities of
+the dense algebra 1e-9, those of the field 1e-6.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from ..block.model import Block
+from ..car.model import LoadCases
+from ..case.model import Case, Check
+from ..installation.model import PadLoads
+from ..installation.proof import face_sum
+from ..response.cuts import section_cut
+from ..response.model import Library
+from ..response.spreading import unit_wrenches
+
+WHEEL_CHECK = "load cases with a wheel load below zero"
+BALANCE, IDENTITY, FIELD = 1e-6, 1e-9, 1e-6
+
+# Name in Library.checks: what it says, and its limit.
+LIBRARY_CHECKS = {
+    "residual": ("unit loads solved: residual of K u = f", FIELD),
+    "reaction": ("auxiliary constraints carry nothing", FIELD),
+    "relief": ("unit loads balanced by the block's own inertia", IDENTITY),
+    "spread": ("spread tractions integrate to the wrench asked", FIELD),
+    "symmetry": ("flexibility symmetric", FIELD),
+    "unit energy": ("work of unit loads equals strain energy", FIELD),
+    "heat reciprocity": ("heat and wrenches reciprocal", FIELD),
+}
+
+
+def load_checks(case: Case, cases: LoadCases) -> Iterator[Check]:
+    """Yield the checks of the car's loads alone."""
+    worst = int(np.argmax(cases.residual))
+    yield _below("loads in balance on every body", cases.residual[worst], BALANCE, f"worst in {cases.names[worst]}")
+    yield _below(
+        "face wrenches equal from the front and from the rear", np.max(cases.front_rear_gap, initial=0.0), BALANCE
+    )
+    lifted = lifted_cases(cases)
+    note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
+    yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
+    yield from _sign(cases)
+
+
+def lifted_cases(cases: LoadCases) -> tuple[str, ...]:
+    """Return the load cases in which the ground would have to pull at a wheel."""
+    return tuple(name for name, lifted in zip(cases.names, cases.wheel_lift, strict=False) if lifted)
+
+
+def solid_checks(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
+    """Yield the checks of library, installation and field."""
+    for name, value in library.checks.items():
+        text, limit = LIBRARY_CHECKS.get(name, (name, FIELD))
+        yield _below(text, value, limit)
+    yield _below(
+        "flexibility is the average motion of the attachments", flexibility_gap(block, library), FIELD, "recomputed"
+    )
+    yield from _installed(case, cases, block, library, pads)
+    yield from _metal(case, block, pads)
+    yield _cut(cases, block, library, pads)
+
+
+def flexibility_gap(block: Block, library: Library) -> float:
+    """Return the largest difference between the flexibility and Pᵀu of the stored motion, as a share."""
+    F = library.flexibility
+    size = np.sqrt(np.diag(F))
+    worst = 0.0
+    for item in block.attachments:
+        rows = library.rows(item.kind, item.name)
+        loads, nodes, _ = unit_wrenches(block, item)
+        unknowns = (3 * nodes[:, None] + np.arange(3)).ravel()
+        motion = np.asarray(library.motion[unknowns])[:, : len(F)]
+        gap = np.abs(loads.reshape(-1, 6).T @ motion - F[rows]) / np.outer(size[rows], size)
+        worst = max(worst, float(gap.max()))
+    return worst
+
+
+def _installed(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
+    yield _below("installed system solved: residual", pads.checks["residual"], IDENTITY)
+    for face in ("front", "rear"):
+        loads = cases.faces[face]
+        state = pads.weights[pads.middle].sum(axis=1)
+        reaction = face_sum(state, block, library, case, face, loads.reference)
+        worst = int(np.abs(reaction[:, :3]).max(axis=1).argmax())
+        force = np.linalg.norm(reaction[worst, :3])
+        statics = np.linalg.norm(loads.wrench[worst].sum(axis=0)[:3])
+        note = f"{cases.names[worst]}: pads {force / 1e3:.4g} kN, statics {statics / 1e3:.4g} kN"
+        if case.paths:
+            note += ", less what the second paths carry"
+        yield _below(f"{face} pads sum to the face wrench", pads.checks[f"sum {face}"], IDENTITY, note)
+    yield _below(
+        "inertia counted once: relief acceleration is the engine's own a - g and alpha", pads.relief_gap, IDENTITY
+    )
+
+
+def _metal(case: Case, block: Block, pads: PadLoads) -> Iterator[Check]:
+    for name in ("mass", "cg", "inertia"):
+        yield _below(f"mesh {name} as the library was solved with", pads.checks[name], IDENTITY)
+    engine = case.bodies["engine"]
+    total = block.mass + sum(item.mass for item in block.carried)
+    yield _below(
+        "mesh and carried masses add up to the engine",
+        abs(total / engine.mass - 1.0),
+        IDENTITY,
+        f"{block.mass:.4g} kg meshed of {engine.mass:.4g} kg",
+    )
+    moment = block.mass * block.cg + sum((item.mass * item.cg for item in block.carried), np.zeros(3))
+    gap = np.abs(moment / total - engine.cg).max()
+    yield Check(name="mesh and carried masses keep the engine's CG", ok=bool(gap <= 1e-6), value=float(gap), limit=1e-6)
+
+
+def _cut(cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Check:
+    """Element forces across mid-length against the loads behind it, in every case at the middle stiffness."""
+    front, rear = cases.faces["front"].reference, cases.faces["rear"].reference
+    middle = (front + rear) / 2.0
+    cut = section_cut(block, library, pads.weights[pads.middle].sum(axis=1), float(middle[0]), middle)
+    arm = np.linalg.norm(front - rear) / 2.0
+    scale = np.array([1.0, 1.0, 1.0, *[1.0 / arm] * 3])
+    gap = np.abs((cut.found - cut.expected) * scale).max() / max(np.abs(cut.expected * scale).max(), 1e-300)
+    return _below("element forces across mid-length equal the section wrench", gap, FIELD)
+
+
+def _sign(cases: LoadCases) -> Iterator[Check]:
+    """The trade's sign: where the front face sags most, its upper studs are pressed and its lower ones pulled."""
+    face = cases.faces["front"]
+    sag = cases.section("front")[:, 4]
+    worst = int(np.argmax(sag))
+    if sag[worst] <= 0.0:
+        return
+    height = face.stud_at[:, -1] - face.stud_at[:, -1].mean()
+    couple = -float(face.stud_axial[worst].sum(axis=0) @ height)
+    yield Check(
+        name="sagging presses the upper studs and pulls the lower ones",
+        ok=abs(couple / sag[worst] - 1.0) < FIELD,
+        value=couple / float(sag[worst]),
+        limit=1.0,
+        note=f"studs' couple over M_sag in {cases.names[worst]}",
+    )
+
+
+def _below(name: str, value: float, limit: float, note: str = "") -> Check:
+    number = float(value)
+    return Check(name=name, ok=bool(number <= limit), value=number, limit=limit, note=note)

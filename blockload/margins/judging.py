@@ -1,0 +1,160 @@
+"""From margins and checks to a verdict.
+
+`ruled out`: a margin fails at both ends of its band and its number may be believed. A stress on a sharp re-entrant
+edge or within a pad diameter of an attachment may not: it alone cannot rule a block out, and it cannot show one
+either. A margin in a load case that lifts a wheel cannot rule out, for that is not a state of the car.
+`not shown`: a check fails, a band crosses zero, a failing number is not believed, a criterion or base state is
+missing, a guess may govern, or there is no solid block yet. `shown within scope`: none of these.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+
+from ..block.model import Block, Material
+from ..car.model import LoadCases
+from ..case.model import Case, Check
+from ..installation.model import PadLoads
+from ..response.model import Library
+from .checks import WHEEL_CHECK, lifted_cases, load_checks, solid_checks
+from .model import Margin, Margins, SurfaceMargins, Verdict
+from .requirements import requirements
+from .scope import not_judged
+from .solid import strength_margins
+from .stiffness import rear_face_motion, stiffness_margins, stiffnesses
+from .studs import stud_margins
+from .wording import INCREMENT
+
+BELIEVED = ("converged", "coarse")
+
+
+def judge(
+    case: Case,
+    cases: LoadCases,
+    block: Block | None,
+    library: Library | None,
+    pads: PadLoads | None,
+    *,
+    grade: Material | None = None,
+) -> Margins:
+    """Judge a case: margins, checks and verdict.
+
+    Parameters
+    ----------
+    case, cases : Case, LoadCases
+        The car and its balanced load cases.
+    block, library, pads : Block, Library, PadLoads, optional
+        The installed block; None without a block (level `faces`).
+    grade : Material, optional
+        At level `faces`, what the block would be cast in, for the requirements sheet.
+
+    """
+    checks = list(load_checks(case, cases))
+    if block is None or library is None or pads is None:
+        margins = stud_margins(case, cases)
+        return Margins(
+            margins=margins,
+            checks=tuple(checks),
+            verdict=verdict(case, cases, margins, checks, level="faces"),
+            requirements=requirements(case, cases, grade),
+        )
+    stiffness = stiffnesses(block, library, case)
+    strength, surface = strength_margins(case, cases, block, library, pads)
+    margins = (
+        *strength,
+        *stud_margins(case, cases, pads=pads, library=library),
+        *stiffness_margins(stiffness, case),
+    )
+    checks += solid_checks(case, cases, block, library, pads)
+    return _solid(case, cases, margins, checks, surface=surface, stiffness=stiffness, pads=pads)
+
+
+def _solid(
+    case: Case,
+    cases: LoadCases,
+    margins: tuple[Margin, ...],
+    checks: list[Check],
+    *,
+    surface: SurfaceMargins,
+    stiffness: Mapping[str, float],
+    pads: PadLoads,
+) -> Margins:
+    return Margins(
+        margins=margins,
+        checks=tuple(checks),
+        verdict=verdict(case, cases, margins, checks, level="solid"),
+        surface=surface,
+        stiffness=stiffness,
+        rear_face=rear_face_motion(cases, pads),
+    )
+
+
+def verdict(case: Case, cases: LoadCases, margins: Sequence[Margin], checks: Sequence[Check], *, level: str) -> Verdict:
+    """Return the verdict and every reason for it."""
+    loaded = [item for item in margins if item.margin is not None]
+    lowest = min(loaded, key=lambda item: item.margin or 0.0, default=None)
+    lifted = lifted_cases(cases)
+    failed = [item for item in (*case.checks, *checks) if not item.ok]
+    broken = [item for item in failed if item.name != WHEEL_CHECK]
+    ruling = [item for item in loaded if rules_out(item, lifted)]
+    if ruling and not broken:
+        word, reasons = "ruled out", tuple(_failure(item) for item in sorted(ruling, key=_lowest_first)[:3])
+    else:
+        reasons = tuple(_doubts(case, loaded, failed, lifted, level=level))
+        word = "not shown" if reasons else "shown within scope"
+    return Verdict(
+        word=word,
+        level=level,
+        lowest_margin=None if lowest is None else lowest.margin,
+        governing="" if lowest is None else _named(lowest),
+        reasons=reasons,
+        not_judged=not_judged(case, cases, level=level),
+    )
+
+
+def rules_out(item: Margin, lifted: Sequence[str] = ()) -> bool:
+    """Whether a margin fails at both ends of its band, in a state of the car, with a number that is believed."""
+    fails = item.band is not None and max(item.band) < 0.0
+    return fails and item.trust in BELIEVED and item.load_case not in lifted
+
+
+def _doubts(
+    case: Case, loaded: Sequence[Margin], failed: Sequence[Check], lifted: Sequence[str], *, level: str
+) -> list[str]:
+    doubts = [f"check failed: {item.name}" for item in failed if item.name != WHEEL_CHECK]
+    if lifted:
+        doubts.append(f"wheel load below zero in {', '.join(lifted)}: the ground cannot pull")
+    failing = [item for item in loaded if item.band is not None and min(item.band) < 0.0]
+    doubts += [_doubt(item, lifted) for item in sorted(failing, key=_lowest_first)]
+    if level == "faces":
+        doubts.append("no block yet: rigid faces and studs can rule out, never show")
+    else:
+        doubts.append(INCREMENT)
+        coarse = [item for item in loaded if item.trust == "coarse"]
+        if coarse:
+            doubts.append(f"{len(coarse)} hotspots on a mesh too coarse for them")
+    guesses = [known.key for known in case.known.values() if known.basis == "guess"]
+    if guesses:
+        doubts.append(f"a guess may govern: {', '.join(guesses)}")
+    return doubts
+
+
+def _doubt(item: Margin, lifted: Sequence[str]) -> str:
+    low, high = item.band or (0.0, 0.0)
+    if high >= 0.0:
+        return f"band crosses zero, {low:.2f} to {high:.2f}: {_named(item)}"
+    why = "wheel load below zero" if item.load_case in lifted else item.trust
+    return f"fails, but the number is not believed ({why}): {_named(item)}"
+
+
+def _failure(item: Margin) -> str:
+    low, high = item.band or (0.0, 0.0)
+    return f"fails at both ends of its band, {low:.2f} to {high:.2f}: {_named(item)}"
+
+
+def _named(item: Margin) -> str:
+    return f"{item.criterion} at {item.place}, {item.load_case}"
+
+
+def _lowest_first(item: Margin) -> float:
+    return item.margin if item.margin is not None else float("inf")

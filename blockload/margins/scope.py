@@ -1,0 +1,56 @@
+"""What a run does not judge: said in every result, so that nobody reads silence as a pass."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from ..car.model import LoadCases
+from ..case.model import Case
+
+ALWAYS = (
+    "crash and occupant protection",
+    "roll structures",
+    "fire",
+    "oil and fuel leaks",
+    "a failed engine",
+    "loss of an axle",
+)
+SOLID_LATER = (
+    "assembly, gas and heat (base states)",
+    "main-bearing line",
+    "bore shape",
+    "fatigue life",
+    "joints that open or slip: prying, stud bending, threads, bearing under the head",
+    "preload change by heat and embedding",
+    "opening at a sharp edge or under a pad beyond the idealised load",
+    "the centripetal part of the inertia inside the block (its size is in the checks)",
+)
+FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
+
+
+def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
+    """Return what this run leaves open, the case's own gaps first."""
+    gaps: list[str] = []
+    if case.installation.second_paths is None and not case.paths:
+        gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
+    without = _without_ratio(case, cases)
+    if without:
+        gaps.append(f"crank torque without an overall ratio: {', '.join(without)}")
+    if case.limits.torsion_min is None:
+        gaps.append("torsional stiffness: no torsion_min in [limits]")
+    if case.limits.bending_min is None:
+        gaps.append("bending stiffness: no bending_min in [limits]")
+    if level == "faces" and case.limits.twist_share is None:
+        gaps.append("share of the car's twist: no twist_share in [limits]")
+    if case.engine_maker_consent != "given":
+        gaps.append(f"the engine maker's consent to chassis loads: {case.engine_maker_consent}")
+    scope = FACES_ONLY if level == "faces" else SOLID_LATER
+    return (*gaps, *scope, *ALWAYS)
+
+
+def _without_ratio(case: Case, cases: LoadCases) -> list[str]:
+    """Driven load cases whose crank torque is unknown."""
+    driven = {item.name for item in case.manoeuvres if item.drive in ("hold_speed", "accelerate") and item.speed > 0.0}
+    driven |= {item.name for item in case.manoeuvres if item.drive == "accelerate"}
+    unknown = np.isnan(cases.crank_torque)
+    return [name for name, missing in zip(cases.names, unknown, strict=True) if missing and name in driven]

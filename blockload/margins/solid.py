@@ -1,0 +1,121 @@
+"""Strength of the solid block: peaks over its surface, as hotspots with place, band, trust and causes."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from ..arrays import Floats, Ints, frozen
+from ..block.model import Block
+from ..car.model import LoadCases
+from ..case.model import Case
+from ..installation.model import PadLoads
+from ..response.model import Library
+from .hotspots import peaks_apart
+from .model import Margin, SurfaceMargins
+from .places import Atlas, atlas, place_name, trust_of
+from .strength import CRITERIA, Criterion, Peaks, allowables, peaks, shares
+from .wording import INCREMENT, causes
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Field:
+    """One criterion over the surface: its peaks, and strength [Pa] and factor of every entry (m,)."""
+
+    criterion: Criterion
+    peaks: Peaks
+    strength: Floats
+    factor: Floats
+
+    @property
+    def ratio(self) -> Floats:
+        """Factor × applied / strength of every entry and variant, (m, P); 1 fails."""
+        result: Floats = self.peaks.worst * (self.factor / self.strength)[:, None]
+        return result
+
+
+def strength_margins(
+    case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads
+) -> tuple[tuple[Margin, ...], SurfaceMargins]:
+    """Return the strength margins at the hotspots of every criterion, and the field at the middle stiffness."""
+    fields = strength_fields(case, block, library, pads)
+    where = atlas(block, library)
+    margins = [
+        _margin(field, int(entry), where=where, cases=cases, library=library, pads=pads)
+        for field in fields
+        for entry in _hot_entries(field, library)
+    ]
+    return tuple(margins), _surface(fields, pads.middle)
+
+
+def strength_fields(case: Case, block: Block, library: Library, pads: PadLoads) -> tuple[Field, ...]:
+    """Return every criterion over every surface entry, all cases and stiffnesses."""
+    found = peaks(library.stress, pads.weights.sum(axis=2))
+    result = []
+    for criterion, peak in zip(CRITERIA, found, strict=True):
+        rows = allowables(criterion, library.volumes, dict(block.materials), case.limits)[library.entry_volume]
+        result.append(Field(criterion=criterion, peaks=peak, strength=rows[:, 0], factor=rows[:, 1]))
+    return tuple(result)
+
+
+def _hot_entries(field: Field, library: Library) -> Ints:
+    """Entries at the peaks of the worst ratio over the variants."""
+    worst = field.ratio.max(axis=1)
+    at_node = np.full(len(library.surface_points), -np.inf)
+    np.maximum.at(at_node, library.entry_node, worst)
+    nodes = peaks_apart(at_node, library.surface_points, library.surface_triangles)
+    order = np.lexsort((-worst, library.entry_node))
+    first = order[np.searchsorted(library.entry_node[order], nodes)]
+    result: Ints = first
+    return result
+
+
+def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library: Library, pads: PadLoads) -> Margin:
+    ratio = field.ratio[entry]
+    variant = int(ratio.argmax())
+    case_index = int(field.peaks.case[entry, variant])
+    applied = float(field.peaks.worst[entry, variant])
+    state = pads.weights[variant, case_index]
+    at = library.surface_points[library.entry_node[entry]]
+    split = shares(field.criterion, np.asarray(library.stress[entry]).dot(state.T).T)
+    trust, reason = trust_of(
+        where, library, entry, criterion=field.criterion, weights=state.sum(axis=0), applied=applied
+    )
+    second = None
+    if len(cases.names) > 1:
+        value = field.factor[entry] * field.peaks.second[entry, variant]
+        if value > 0.0:
+            name = cases.names[field.peaks.second_case[entry, variant]]
+            second = (name, float(field.strength[entry] / value - 1.0))
+    return Margin(
+        criterion=field.criterion.name,
+        place=place_name(where, at, library.volumes[library.entry_volume[entry]]),
+        at=(float(at[0]), float(at[1]), float(at[2])),
+        load_case=cases.names[case_index],
+        applied=applied,
+        allowable=float(field.strength[entry]),
+        unit="Pa",
+        factor=float(field.factor[entry]),
+        margin=float(1.0 / ratio.max() - 1.0),
+        band=(float(1.0 / ratio.max() - 1.0), float(1.0 / max(ratio.min(), 1e-12) - 1.0)),
+        trust=trust,
+        causes=causes(pads.sources, split),
+        second=second,
+        method=f"{field.criterion.method}; {pads.variants[variant]} pads",
+        note=f"{INCREMENT}; {reason}",
+    )
+
+
+def _surface(fields: Sequence[Field], middle: int) -> SurfaceMargins:
+    """Worst criterion of every entry at the middle stiffness."""
+    ratios = np.stack([field.ratio[:, middle] for field in fields], axis=1)
+    worst = ratios.argmax(axis=1)
+    rows = np.arange(len(ratios))
+    cases = np.stack([field.peaks.case[:, middle] for field in fields], axis=1)
+    return SurfaceMargins(
+        ratio=frozen(ratios[rows, worst]),
+        case=frozen(cases[rows, worst], dtype=np.int64),
+        criterion=frozen(worst, dtype=np.int64),
+    )
