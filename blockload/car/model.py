@@ -47,6 +47,15 @@ class LocalLoad:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class LinkLoads:
+    """Tensions (C, S, n) of a corner's links and of what its rocker works on; condition number of its equations."""
+
+    names: tuple[str, ...]
+    tension: Floats
+    condition: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Term:
     """One line of a free-body table: force and moment (C, 3) about `at` ((3,) or (C, 3)) on `body`."""
 

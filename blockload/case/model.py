@@ -31,23 +31,36 @@ class Body:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Link:
-    """One two-force member of the left corner: outboard and inboard ends (3,), the body of its inboard end."""
+    """One two-force member of the left corner: outboard and inboard ends (3,), the body of its inboard end.
+
+    meets: "upright", or the wishbone ("upper", "lower") that a push or pull rod works on away from its outer joint;
+    attachments: where the left and the right link enter the block, for a link that the engine carries.
+    """
 
     name: str
     outboard: Floats
     inboard: Floats
     carried_by: str
+    meets: str = "upright"
+    attachments: tuple[str, str] | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Rocker:
-    """What the left pushrod works on; pairs are (rocker end, far end), each (3,)."""
+    """What the left pushrod works on; pairs are (rocker end, far end), each (3,).
+
+    heave (3,) is the left rocker's end of an element across the two rockers, heave_share its part of their mean
+    torque; attachments: where the left and the right rocker's loads enter the block when the engine carries them.
+    """
 
     pivot: Floats
     axis: Floats
     spring: tuple[Floats, Floats] | None
     bar_link: tuple[Floats, Floats] | None
     bar_bearing_y: float | None
+    heave: Floats | None = None
+    heave_share: float = 0.0
+    attachments: tuple[str, str] | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
