@@ -353,6 +353,7 @@ class Case:
     defaults: tuple[Default, ...]
     checks: tuple[Check, ...]
     aero_split: tuple[Device, ...] = ()
+    concept_grade: str | None = None
 
     @property
     def wheelbase(self) -> float:

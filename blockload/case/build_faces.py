@@ -1,0 +1,135 @@
+"""Faces and their studs: what all studs share, left-right names, preload from size and class."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+from typing import Any
+
+import numpy as np
+
+from ..arrays import frozen
+from ..errors import CaseError
+from ..units import parse, show
+from .fasteners import proof_load
+from .model import FACES, Face, Stud
+from .notes import Notes, key_of
+from .schema_block import FacesTable, FaceTable, OneStudTable, StudTable
+from .tables import metas
+
+PRELOAD_SHARES = ("50 %", "62.5 %", "75 %")
+PRELOAD_REASON = "share of the proof load (ISO 898-1); up to 75 % for reused studs (Shigley, eq. 8-31); 50 % unsourced"
+
+
+def build_faces(table: FacesTable, notes: Notes) -> dict[str, Face]:
+    """Return both faces in file order of their studs."""
+    faces = {}
+    for name in FACES:
+        given: FaceTable = getattr(table, name)
+        common = given.stud
+        if common is None and name == "rear" and table.front.stud is not None:
+            common = table.front.stud
+            notes.default("faces.rear.stud", "as faces.front.stud", "one stud for both faces")
+        faces[name] = _face(name, given, common, notes)
+    if faces["front"].x <= faces["rear"].x:
+        found = f"the front face (x = {show(faces['front'].x, 'm')}) is not ahead of the rear face"
+        notes.problem("faces.rear.x", f"{found} (x = {show(faces['rear'].x, 'm')})", "x points forward", "check signs")
+    return faces
+
+
+def _face(name: str, given: FaceTable, common: StudTable | None, notes: Notes) -> Face:
+    prefix = f"faces.{name}"
+    shared = {
+        key: notes.take(common, StudTable, f"{prefix}.stud", key)
+        for key in ("preload_scatter", "load_factor", "friction")
+    }
+    studs = tuple(
+        stud for key, item in given.studs.items() if (stud := _stud(name, key, item, common, shared, notes)) is not None
+    )
+    if any(item.preload is None for item in given.studs.values()) and (common is None or common.preload is None):
+        notes.bound(f"{prefix}.stud.preload", PRELOAD_SHARES, PRELOAD_REASON)
+    if given.mirrored:
+        studs = _mirrored(name, studs, notes)
+    _check_pattern(name, studs, notes)
+    return Face(name=name, x=given.x, studs=studs)
+
+
+def _stud(
+    face: str, name: str, item: OneStudTable, common: StudTable | None, shared: Mapping[str, float], notes: Notes
+) -> Stud | None:
+    key = key_of("faces", face, "studs", name)
+    values: dict[str, Any] = {}
+    for entry in ("size", "property_class", "preload", *shared):
+        own = getattr(item, entry)
+        values[entry] = own if own is not None else getattr(common, entry, None)
+        if values[entry] is None and entry in shared:
+            values[entry] = shared[entry]
+    for entry in ("size", "property_class"):
+        if values[entry] is None:
+            example = metas(StudTable)[entry].example
+            found = f"no {entry.replace('_', ' ')} is given for stud {name}"
+            remedy = f"add {entry} = {example} to stud = {{...}} under [faces.{face}]"
+            notes.problem(f"faces.{face}.stud.{entry}", found, f"for example {example}", remedy)
+            return None
+    try:
+        values["preload"] = _preload(
+            values, f"{key}.preload" if item.preload is not None else f"faces.{face}.stud.preload", notes
+        )
+    except CaseError as error:
+        notes.problems.append(error)
+        return None
+    return Stud(name=name, at=item.at, **values)
+
+
+def _preload(values: Mapping[str, Any], key: str, notes: Notes) -> float:
+    where = notes.where(key)
+    proof = proof_load(values["size"], values["property_class"], where)
+    given = values["preload"] if values["preload"] is not None else PRELOAD_SHARES[1]
+    share = isinstance(given, str) and given.strip().endswith("%")
+    preload = float(parse(given, "ratio", where)) * proof if share else float(parse(given, "force", where))
+    if not 0.0 <= preload <= 1.05 * proof:
+        stud = f"{values['size']} {values['property_class']}"
+        found = f"a preload of {show(preload, 'kN')} is beyond 1.05 times the proof load of {stud}"
+        raise CaseError(where, found, f"0 to {show(1.05 * proof, 'kN')}", "check size, class, force and unit")
+    return preload
+
+
+def side_of(name: str) -> int:
+    """Return +1 for a name that says left, -1 for right, 0 for neither: TL, bottom_left, ML."""
+    word = name.lower()
+    if name.endswith("L") or word.endswith(("left", "_l")):
+        return 1
+    return -1 if name.endswith("R") or word.endswith(("right", "_r")) else 0
+
+
+def _mirrored(face: str, studs: tuple[Stud, ...], notes: Notes) -> tuple[Stud, ...]:
+    both: list[Stud] = []
+    for stud in studs:
+        both.append(stud)
+        if stud.name.endswith("L"):
+            both.append(replace(stud, name=stud.name[:-1] + "R", at=frozen(stud.at * (-1.0, 1.0))))
+    if len({stud.name for stud in both}) < len(both):
+        found = "mirrored = true, yet some studs on the right are written too"
+        notes.problem(f"faces.{face}.mirrored", found, "left studs only, or mirrored = false", "take one of them out")
+    return tuple(both)
+
+
+def _check_pattern(face: str, studs: tuple[Stud, ...], notes: Notes) -> None:
+    for stud in studs:
+        side = side_of(stud.name)
+        if side and side * stud.at[0] <= 0.0:
+            said, lies = ("left", "right") if side > 0 else ("right", "left")
+            found = f"stud {stud.name} is named for the {said} but sits at y = {show(float(stud.at[0]), 'mm')}, on the {lies}"
+            allowed = "y points to the car's left: names in L at +y, names in R at -y"
+            remedy = "swap name or sign, or state this file's axes in [frame]"
+            notes.problem(key_of("faces", face, "studs", stud.name), found, allowed, remedy)
+    points = np.array([stud.at for stud in studs]).reshape(-1, 2)
+    spread = np.linalg.svd(points - points.mean(axis=0), compute_uv=False) if len(studs) > 2 else np.zeros(2)
+    if not notes.problems and spread[-1] < 0.01:
+        found = f"{len(studs)} studs on one line (or fewer than three) hold no moment"
+        remedy = f'name each stud with its (y, z), for example TL = "(0.24, 0.45) m" under [faces.{face}.studs]'
+        notes.problem(f"faces.{face}.studs", found, "three or more studs, not on one line", remedy)
+        return
+    for i, j in np.argwhere(np.triu(np.linalg.norm(points[:, None] - points, axis=2) < 1e-3, 1)):
+        found = f"studs {studs[i].name} and {studs[j].name} sit at the same place"
+        notes.problem(f"faces.{face}.studs", found, "each stud at a place of its own", "correct one of them")

@@ -1,0 +1,214 @@
+"""From a case file to a Case: layers merged, turned into the car's axes, checked by the schema, built, cross-checked."""
+
+from __future__ import annotations
+
+import hashlib
+from collections.abc import Callable, Mapping, Sequence
+from pathlib import Path
+from typing import Any
+
+from pydantic import ValidationError
+
+from ..errors import CaseError
+from .build_block import build_block, build_installation, build_known, build_limits, build_paths, note_unused
+from .build_car import build_car
+from .build_faces import build_faces
+from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_manoeuvres
+from .documents import Document, Layer, join_key, layers, literal, merged, nested, override, split_key
+from .frame import Frame, read_frame, to_car
+from .messages import refusals, together
+from .model import Case, Engine
+from .notes import Notes
+from .plausible import check_car
+from .schema import CaseTable
+from .schema_car import EngineTable
+
+
+def read(path: str | Path, overrides: Sequence[str] = ()) -> Case:
+    """Read a case file.
+
+    Parameters
+    ----------
+    path : str or Path
+        The case file; files it extends are read too.
+    overrides : sequence of str
+        KEY=VALUE texts that go over the file's own keys, in this file's frame.
+
+    Raises
+    ------
+    CaseError
+        Saying which file, table and key, what was found, what is allowed and what to do.
+    """
+    path = Path(path)
+    found = layers(path)
+    digest = hashlib.sha256()
+    document: Document = {}
+    for layer in reversed(found):
+        frame = read_frame(layer.document, layer.path)
+        document = merged(document, _in_car(_rebased(layer, path.parent), frame))
+        digest.update(layer.content + (frame.content if frame is not None else b""))
+    if "frame" not in found[0].document:
+        document.pop("frame", None)
+    document.pop("extends", None)
+    outermost = read_frame(found[0].document, path)
+    for text in overrides:
+        document = merged(document, _in_car(_fitted(document, override(text)), outermost))
+    return _build(document, path, digest.hexdigest(), tuple(overrides), found)
+
+
+def replaced(case: Case, key: str, text: str) -> Case:
+    """Return the case with one key changed, rebuilt and checked from its document.
+
+    Parameters
+    ----------
+    key : str
+        Dotted key, such as "bodies.gearbox.mass"; parts may stand in quotes.
+    text : str
+        The value, a TOML literal or a plain text such as "130 kg", in the case file's own frame.
+    """
+    place = f"{case.path}, {key}"
+    change = nested(split_key(key, place), literal(text))
+    frame = read_frame(case.document, case.path)
+    document = merged(case.document, _in_car(_fitted(case.document, change), frame))
+    return _build(document, case.path, case.sha256, (*case.overrides, f"{key}={text}"), ())
+
+
+def _in_car(document: Mapping[str, Any], frame: Frame | None) -> Document:
+    return to_car(document, CaseTable, frame) if frame is not None else dict(document)
+
+
+def _rebased(layer: Layer, folder: Path) -> Document:
+    """Return a layer's document with its file names relative to the outermost file's folder."""
+    own = layer.path.parent
+    document = dict(layer.document)
+    if own == folder:
+        return document
+    for table, key in (("block", "mesh"), ("block", "cad")):
+        name = document.get(table, {}).get(key) if isinstance(document.get(table), Mapping) else None
+        if isinstance(name, str):
+            document[table] = {**document[table], key: str((own / name).resolve())}
+    if isinstance(document.get("aero"), Mapping):
+        document["aero"] = {
+            name: {**item, "map": str((own / item["map"]).resolve())}
+            if isinstance(item, Mapping) and isinstance(item.get("map"), str)
+            else item
+            for name, item in document["aero"].items()
+        }
+    return document
+
+
+def _fitted(document: Mapping[str, Any], change: Mapping[str, Any]) -> Document:
+    """Return a change that fits the document where a bare text stands for a table, as a stud's (y, z) does."""
+    studs = change.get("faces", {})
+    result = dict(change)
+    if not isinstance(studs, Mapping):
+        return result
+    for face, item in studs.items():
+        for name, value in (item.get("studs", {}) if isinstance(item, Mapping) else {}).items():
+            given = document.get("faces", {}).get(face, {}).get("studs", {}).get(name)
+            if isinstance(value, Mapping) and given is not None and not isinstance(given, Mapping):
+                result = merged(result, nested(("faces", face, "studs", name), {"at": given, **value}))
+    return result
+
+
+def _locator(path: Path, overrides: Sequence[str], found: Sequence[Layer]) -> Callable[[str], str]:
+    """Return a function that says in which file, or in which override, a dotted key stands."""
+
+    def where(key: str) -> str:
+        parts = split_key(key, str(path)) if key else ()
+        for text in reversed(overrides):
+            if _holds(override(text), parts):
+                return f"--set {text}"
+        for layer in found:
+            if _holds(layer.document, parts):
+                return f"{layer.path}, {key}"
+        return f"{path}, {key}" if key else str(path)
+
+    return where
+
+
+def _holds(document: Any, parts: Sequence[str]) -> bool:
+    for part in parts:
+        if not isinstance(document, Mapping) or part not in document:
+            return False
+        document = document[part]
+    return True
+
+
+def _build(document: Document, path: Path, sha256: str, overrides: tuple[str, ...], found: Sequence[Layer]) -> Case:
+    where = _locator(path, overrides, found)
+    try:
+        table = CaseTable.model_validate(document)
+    except ValidationError as error:
+        raise together(refusals(error, where), str(path)) from None
+    notes = Notes(where=where)
+    case = _assembled(table, document, path, sha256, overrides, notes)
+    if notes.problems or case is None:
+        raise together(notes.problems, str(path))
+    return case
+
+
+def _assembled(
+    table: CaseTable, document: Document, path: Path, sha256: str, overrides: tuple[str, ...], notes: Notes
+) -> Case | None:
+    """Build every part; None where the car itself cannot be built, with the reasons in the notes."""
+    folder = path.parent
+    air_density = notes.take(table, CaseTable, "", "air_density")
+    faces = build_faces(table.faces, notes)
+    bodies, axles = build_car(table, faces, notes)
+    if not bodies:
+        return None
+    check_car(bodies, axles, faces, table.car, notes)
+    devices = build_devices(table, folder, air_density, notes)
+    drive = build_drive(table, notes)
+    case = Case(
+        path=path,
+        title=table.title or path.stem,
+        sha256=sha256,
+        document=document,
+        overrides=overrides,
+        air_density=air_density,
+        gravity=notes.take(table, CaseTable, "", "gravity"),
+        bodies=bodies,
+        axles=axles,
+        devices=devices,
+        aero_total=build_aero_total(table, devices, axles, air_density, notes),
+        aero_split=build_aero_split(table),
+        drive=drive,
+        engine=_engine(table.engine),
+        tyre_friction=_friction(table),
+        faces=faces,
+        manoeuvres=build_manoeuvres(table, drive, notes),
+        block=build_block(table, folder, faces, notes),
+        installation=build_installation(table, faces, notes),
+        paths=build_paths(table, notes),
+        limits=build_limits(table, notes),
+        engine_maker_consent=notes.take(table.engine, EngineTable, "engine", "maker_consent"),
+        known=build_known(table, notes),
+        concept_grade=table.concept.grade if table.concept is not None else None,
+        bounds=(),
+        defaults=(),
+        checks=(),
+    )
+    note_unused(table, notes)
+    return _noted(case, notes)
+
+
+def _noted(case: Case, notes: Notes) -> Case:
+    from dataclasses import replace
+
+    return replace(case, bounds=tuple(notes.bounds), defaults=tuple(notes.defaults), checks=tuple(notes.checks))
+
+
+def _engine(given: EngineTable | None) -> Engine:
+    names = ("bore", "stroke", "cylinders", "peak_torque", "max_speed")
+    return Engine(**{name: getattr(given, name, None) for name in names})
+
+
+def _friction(table: CaseTable) -> float | None:
+    """The smaller of the two peak frictions: grip used is shown on the safe side."""
+    given = [value for value in (table.tyres.mu_x, table.tyres.mu_y) if value is not None] if table.tyres else []
+    return min(given) if given else None
+
+
+__all__ = ["CaseError", "read", "replaced"]
