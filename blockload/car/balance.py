@@ -24,7 +24,8 @@ from .manoeuvres import Inputs, read
 from .model import LoadCases
 from .residual import refuse, residuals
 from .sources import elementary, source_names
-from .terms import body_terms, crank_terms, face_terms, wheel_terms
+from .suspension import axle_maps, body_wrenches, corner_wrenches, link_loads
+from .terms import body_terms, crank_terms, face_terms, pickup_terms, wheel_terms
 from .wheels import tyre_answer
 from .wrench import sealed
 
@@ -48,13 +49,16 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
     couple = crank_couples(case, inputs, names, torque)
     corners = corner_loads(case, inputs, frame, loads.loads[:, :, 3:], tyres.force)
     shaft = np.where([name == "crank" for name in names], couple, 0.0)
-    chain = chain_loads(loads.loads, frame, corners, shaft)
+    maps = axle_maps(case, frame)
+    wrenches = corner_wrenches(frame, corners.resultant)
+    chain = chain_loads(loads.loads, frame, corners, body_wrenches(maps, wrenches), shaft)
     faces = face_loads(case, chain)
     wheel_force = sealed(tyres.force + loads.contact)
     terms = (
         *body_terms(case, inputs, car, loads.motion.sum(axis=1)),
         *crank_terms(car, couple[:, names.index("crank")], couple[:, names.index("crank_inertia")]),
-        *wheel_terms(frame, wheel_force, corners),
+        *wheel_terms(frame, wheel_force, corners.shaft.sum(axis=1)),
+        *pickup_terms(maps, wrenches.sum(axis=1)),
         *face_terms(faces["front"], faces["rear"]),
     )
     residual = residuals(terms, car, len(inputs.names))
@@ -72,7 +76,8 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
         crank_torque=sealed(torque),
         crank_couple=sealed(couple),
         faces=faces,
-        engine_loads=engine_loads(case, inputs, frame, corners),
+        links=link_loads(maps, wrenches),
+        engine_loads=engine_loads(case, inputs, frame, maps, corners.shaft, wrenches),
         terms=terms,
         residual=sealed(residual.max(axis=1)),
         front_rear_gap=sealed(front_rear_gap(chain)),

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..arrays import Floats, frozen
-from ..case.model import CORNERS, Axle, Case
+from ..case.model import CARRIERS, CORNERS, Axle, Case
 from ..errors import CaseError
 
 BODY_SOURCES = {
@@ -42,7 +42,7 @@ class Chassis:
     """Where wheels touch the ground and what carries them, corners in the order FL FR RL RR.
 
     contact (4, 3), wheel_centre (4, 3), radius (4,); carrier and casing (4,) index the body that takes the corner's
-    forces and the body whose casing takes the half-shaft's couple.
+    forces where no links say otherwise, and the body whose casing takes the half-shaft's couple.
     """
 
     contact: Floats
@@ -83,13 +83,13 @@ def chassis(case: Case) -> Chassis:
     contact, centre, radius, carrier, casing = [], [], [], [], []
     for name in AXLES:
         axle = case.axles[name]
-        body = _BODY_INDEX[_carrier(axle)]
+        body = _carrier(axle)
         for side in (1.0, -1.0):
             contact.append((axle.x, side * axle.track / 2, 0.0))
             centre.append((axle.x, side * axle.track / 2, axle.loaded_radius))
             radius.append(axle.loaded_radius)
             carrier.append(body)
-            casing.append(_BODY_INDEX["gearbox"] if name == "rear" else body)
+            casing.append(CARRIERS.index("gearbox") if name == "rear" else body)
     return Chassis(
         contact=frozen(contact),
         wheel_centre=frozen(centre),
@@ -104,18 +104,7 @@ def corner_body(corner: str) -> int:
     return 3 + CORNERS.index(corner)
 
 
-def _carrier(axle: Axle) -> str:
-    carriers = sorted({link.carried_by for link in axle.links.values()} or {axle.carried_by})
-    if len(carriers) > 1:
-        raise CaseError(
-            f"[axles.{axle.name}.links]",
-            f"inboard ends on several bodies ({', '.join(carriers)})",
-            "all inboard ends of an axle on one body",
-            "links on two bodies are not used yet: put them on one body, or leave the links out and name carried_by",
-        )
-    if carriers[0] not in _BODY_INDEX:
-        raise CaseError(f"[axles.{axle.name}] carried_by", repr(carriers[0]), ", ".join(_BODY_INDEX))
-    return carriers[0]
-
-
-_BODY_INDEX = {"tub": 0, "engine": 1, "gearbox": 2}
+def _carrier(axle: Axle) -> int:
+    if axle.carried_by not in CARRIERS:
+        raise CaseError(f"[axles.{axle.name}] carried_by", repr(axle.carried_by), ", ".join(CARRIERS))
+    return CARRIERS.index(axle.carried_by)

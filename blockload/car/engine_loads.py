@@ -8,28 +8,36 @@ from ..arrays import Floats
 from ..case.model import CORNERS, Case
 from .aero import device_force
 from .bodies import Chassis
-from .corners import CornerLoads
 from .manoeuvres import Inputs
 from .model import LocalLoad
 from .sources import ENGINE
-from .wrench import moved, sealed
+from .suspension import AxleMap, pickup_load
+from .wrench import sealed
 
 
-def engine_loads(case: Case, inputs: Inputs, frame: Chassis, corners: CornerLoads) -> tuple[LocalLoad, ...]:
-    """Devices, and the resultants of corners, that the engine itself carries."""
+def engine_loads(
+    case: Case, inputs: Inputs, frame: Chassis, maps: tuple[AxleMap, AxleMap], shaft: Floats, wrenches: Floats
+) -> tuple[LocalLoad, ...]:
+    """Devices, links (or whole corners) and half-shaft couples that the engine itself carries.
+
+    `shaft` (C, S, 4) is the torque of each half-shaft on its wheel, `wrenches` (C, S, 4, 6) those of the corners.
+    """
     result = []
     for k, device in enumerate(case.devices):
         if device.on == "engine":
-            load = np.zeros((*corners.shaft.shape[:2], 6))
+            load = np.zeros((*shaft.shape[:2], 6))
             load[:, k, :3] = device_force(device, inputs)
             result.append(_local(f"aero.{device.name}", device.attachment, device.at, load))
+    for axle in maps:
+        for pickup in axle.pickups:
+            if pickup.body == ENGINE:
+                load = pickup_load(pickup, wrenches)
+                result.append(_local(pickup.name, pickup.attachment, pickup.at, load))
     for i, corner in enumerate(CORNERS):
-        if frame.carrier[i] == ENGINE:
-            centre = frame.wheel_centre[i]
-            load = moved(corners.resultant[:, :, i], centre)
-            if frame.casing[i] == ENGINE:
-                load[..., 4] -= corners.shaft[:, :, i]
-            result.append(_local(f"corner.{corner}", None, centre, load))
+        if frame.casing[i] == ENGINE and shaft[:, :, i].any():
+            load = np.zeros((*shaft.shape[:2], 6))
+            load[..., 4] = -shaft[:, :, i]
+            result.append(_local(f"half-shaft.{corner}", None, frame.wheel_centre[i], load))
     return tuple(result)
 
 

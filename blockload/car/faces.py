@@ -22,14 +22,14 @@ from .studs import pattern, rigid_face
 from .wrench import moved, sealed
 
 
-def chain_loads(loads: Floats, frame: Chassis, corners: CornerLoads, shaft: Floats) -> Floats:
+def chain_loads(loads: Floats, frame: Chassis, corners: CornerLoads, handed: Floats, shaft: Floats) -> Floats:
     """Loads (C, S, 3, 6) on tub, engine and gearbox about the origin, with all that corners and shafts hand on.
 
-    `loads` (C, S, B, 6) act on the bodies themselves; `shaft` (C, S) is the input shaft's couple on the engine.
+    `loads` (C, S, B, 6) act on the bodies themselves; `handed` (C, S, 3, 6) is what the corners hand on;
+    `shaft` (C, S) is the input shaft's couple on the engine.
     """
-    chain = loads[:, :, :3].copy()
-    for i in range(len(frame.carrier)):
-        chain[:, :, frame.carrier[i]] += corners.resultant[:, :, i]
+    chain = loads[:, :, :3] + handed
+    for i in range(len(frame.casing)):
         chain[:, :, frame.casing[i], 4] -= corners.shaft[:, :, i]
     chain[:, :, 1, 3] += shaft
     chain[:, :, 2, 3] -= shaft

@@ -10,7 +10,7 @@ how nearly, its right vector which members would be strained against each other,
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -105,17 +105,16 @@ def checked_condition(matrix: Floats, unknowns: Sequence[str], where: str) -> fl
     )
 
 
-def ends(links: dict[str, Link] | None, where: str) -> tuple[Floats, Floats]:
+def ends(links: Mapping[str, Link], where: str) -> tuple[Floats, Floats]:
     """Outboard and inboard ends, (6, 3) each in the order of LINKS, of a left corner's links by name."""
-    given = links or {}
-    for name in given:
+    for name in links:
         if name not in LINKS:
             raise CaseError(f"{where}.{name}", "no such link", ", ".join(LINKS), nearest(name, LINKS))
-    missing = [name for name in LINKS if name not in given]
+    missing = [name for name in LINKS if name not in links]
     if missing:
         remedy = "give all six, or none: without links the corner acts on its carrier as one wrench"
         raise CaseError(where, f"missing: {', '.join(missing)}", ", ".join(LINKS), remedy)
-    chosen = [given[name] for name in LINKS]
+    chosen = [links[name] for name in LINKS]
     return np.array([link.outboard for link in chosen]), np.array([link.inboard for link in chosen])
 
 

@@ -79,6 +79,7 @@ class LoadCases:
     omega_squared (C,) is that of the steady turn's yaw rate [rad^2/s^2]: it sizes the neglected omega x (omega x r).
     wheel_lift (C,) tells whether any wheel load of the whole manoeuvre (all parts) is below zero: the ground would
     have to pull, so such a case is not a state of the car.
+    links maps each corner that has them to its tensions.
     """
 
     names: tuple[str, ...]
@@ -99,6 +100,7 @@ class LoadCases:
     front_rear_gap: Floats
     omega_squared: Floats
     wheel_lift: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=bool))
+    links: Mapping[str, LinkLoads] = field(default_factory=dict)
 
     @property
     def wheels(self) -> Floats:

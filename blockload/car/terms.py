@@ -12,10 +12,10 @@ from ..arrays import Floats, frozen
 from ..case.model import CORNERS, Case
 from .aero import device_force
 from .bodies import Chassis, Masses
-from .corners import CornerLoads
 from .manoeuvres import Inputs
 from .model import BODIES, FaceLoads, Term
-from .wrench import moved, sealed
+from .suspension import AxleMap, pickup_load
+from .wrench import sealed
 
 FACE_LABELS = ("front face", "rear face")
 CRANK_LABELS = ("input shaft", "crank inertia")
@@ -37,23 +37,35 @@ def body_terms(case: Case, inputs: Inputs, car: Masses, motion: Floats) -> list[
     return result
 
 
-def wheel_terms(frame: Chassis, wheel_force: Floats, corners: CornerLoads) -> list[Term]:
-    """Tyre forces (C, S, 4, 3), corner resultants at the wheel centres on corner and carrier, half-shaft couples."""
+def wheel_terms(frame: Chassis, wheel_force: Floats, shaft: Floats) -> list[Term]:
+    """Tyre forces, from those by source (C, S, 4, 3), and half-shaft couples (C, 4) on corner and casing."""
     result = []
     tyre = wheel_force.sum(axis=1)
-    resultant = moved(corners.resultant.sum(axis=1), frame.wheel_centre)
-    shaft = corners.shaft.sum(axis=1)
     for i, corner in enumerate(CORNERS):
-        carrier, casing = BODIES[frame.carrier[i]], BODIES[frame.casing[i]]
-        centre, force, moment = frame.wheel_centre[i], resultant[:, i, :3], resultant[:, i, 3:]
         result.append(_term(corner, "tyre", frame.contact[i], tyre[:, i]))
-        result.append(_term(corner, carrier, centre, -force, -moment))
-        result.append(_term(carrier, f"corner.{corner}", centre, force, moment))
         if shaft[:, i].any():
-            couple = np.zeros_like(force)
+            casing, centre = BODIES[frame.casing[i]], frame.wheel_centre[i]
+            couple = np.zeros_like(tyre[:, i])
             couple[:, 1] = shaft[:, i]
-            result.append(_term(corner, "half-shaft", centre, np.zeros_like(force), couple))
-            result.append(_term(casing, f"half-shaft {corner}", centre, np.zeros_like(force), -couple))
+            result.append(_term(corner, "half-shaft", centre, np.zeros_like(couple), couple))
+            result.append(_term(casing, f"half-shaft {corner}", centre, np.zeros_like(couple), -couple))
+    return result
+
+
+def pickup_terms(maps: tuple[AxleMap, AxleMap], wrenches: Floats) -> list[Term]:
+    """Links (or the one resultant) on each corner, pick-up loads on the bodies, from `corner_wrenches` (C, 4, 6)."""
+    result = []
+    for k, axle in enumerate(maps):
+        for side, corner in enumerate(axle.sides):
+            for j, name in enumerate(corner.names):
+                force = wrenches[:, 2 * k + side] @ corner.force[j].T
+                result.append(_term(CORNERS[2 * k + side], name, corner.inboard[j], -force))
+        for pickup in axle.pickups:
+            load = pickup_load(pickup, wrenches)
+            body, force, moment = BODIES[pickup.body], load[:, :3], load[:, 3:]
+            result.append(_term(body, pickup.name, pickup.at, force, moment))
+            if not axle.sides:
+                result.append(_term(CORNERS[pickup.corner], body, pickup.at, -force, -moment))
     return result
 
 
