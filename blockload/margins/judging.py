@@ -9,19 +9,18 @@ missing, a guess may govern, or there is no solid block yet. `shown within scope
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 
 from ..block.model import Block, Material
 from ..car.model import LoadCases
 from ..case.model import Case, Check
 from ..installation.model import PadLoads
 from ..response.model import Library
-from .checks import WHEEL_CHECK, lifted_cases, load_checks, solid_checks
-from .model import Margin, Margins, SurfaceMargins, Verdict
+from .faces import face_margins
+from .load_checks import WHEEL_CHECK, lifted_cases, load_checks
+from .model import Margin, Margins, Verdict
 from .requirements import requirements
 from .scope import not_judged
-from .solid import strength_margins
-from .stiffness import rear_face_motion, stiffness_margins, stiffnesses
 from .studs import stud_margins
 from .wording import INCREMENT
 
@@ -49,39 +48,33 @@ def judge(
         At level `faces`, what the block would be cast in, for the requirements sheet.
 
     """
-    checks = list(load_checks(case, cases))
-    if block is None or library is None or pads is None:
-        margins = stud_margins(case, cases)
-        return Margins(
-            margins=margins,
-            checks=tuple(checks),
-            verdict=verdict(case, cases, margins, checks, level="faces"),
-            requirements=requirements(case, cases, grade),
-        )
-    stiffness = stiffnesses(block, library, case)
-    strength, surface = strength_margins(case, cases, block, library, pads)
-    margins = (
-        *strength,
-        *stud_margins(case, cases, pads=pads, library=library),
-        *stiffness_margins(stiffness, case),
+    checks = tuple(load_checks(cases))
+    if block is not None and library is not None and pads is not None:
+        return _solid(case, cases, block, library, pads, checks=checks)
+    margins = (*stud_margins(case, cases), *face_margins(case, cases))
+    return Margins(
+        margins=margins,
+        checks=checks,
+        verdict=verdict(case, cases, margins, checks, level="faces"),
+        requirements=requirements(case, cases, grade),
     )
-    checks += solid_checks(case, cases, block, library, pads)
-    return _solid(case, cases, margins, checks, surface=surface, stiffness=stiffness, pads=pads)
 
 
 def _solid(
-    case: Case,
-    cases: LoadCases,
-    margins: tuple[Margin, ...],
-    checks: list[Check],
-    *,
-    surface: SurfaceMargins,
-    stiffness: Mapping[str, float],
-    pads: PadLoads,
+    case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads, *, checks: tuple[Check, ...]
 ) -> Margins:
+    from .solid import strength_margins
+    from .solid_checks import solid_checks
+    from .stiffness import rear_face_motion, stiffness_margins, stiffnesses
+
+    stiffness = stiffnesses(block, library, case)
+    strength, surface = strength_margins(case, cases, block, library, pads)
+    studs = stud_margins(case, cases, pads=pads, library=library)
+    margins = (*strength, *studs, *face_margins(case, cases), *stiffness_margins(stiffness, case))
+    checks = (*checks, *solid_checks(case, cases, block, library, pads))
     return Margins(
         margins=margins,
-        checks=tuple(checks),
+        checks=checks,
         verdict=verdict(case, cases, margins, checks, level="solid"),
         surface=surface,
         stiffness=stiffness,

@@ -70,21 +70,27 @@ def _factor(case: Case, material: Material) -> float:
 
 
 def _preloads(case: Case, loads: FaceLoads) -> dict[str, float]:
-    """Nominal preload each stud needs, at the worst of the splits: scatter and factor included."""
+    """Nominal preload each stud needs, scatter and factor included: on the rigid face, and at the worst split."""
     needed: dict[str, float] = {}
-    splits = [split.force.sum(axis=1) for split in rigid_splits(loads, case)]
+    splits = np.stack([split.force.sum(axis=1) for split in rigid_splits(loads, case)])
     for index, stud in enumerate(case.faces[loads.name].studs):
-        of = joint(stud)
-        forces = np.stack([split[:, index] for split in splits])
-        slip = case.limits.slip_factor * _worst(slip_load(of, forces)) / max(stud.friction, 1e-12)
-        opening = case.limits.separation_factor * _worst(separation_load(of, forces))
-        needed[f"{stud.name}_preload_against_slip_N"] = slip / (1.0 - stud.preload_scatter)
-        needed[f"{stud.name}_preload_against_separation_N"] = opening / (1.0 - stud.preload_scatter)
+        of, forces = joint(stud), splits[:, :, index]
+        share = 1.0 - stud.preload_scatter
+        slip = case.limits.slip_factor / (stud.friction * share) * _worst(slip_load(of, forces))
+        opening = case.limits.separation_factor / share * _worst(separation_load(of, forces))
+        needed |= {
+            f"{stud.name}_preload_against_slip_rigid_face_N": float(slip[0]),
+            f"{stud.name}_preload_against_slip_worst_split_N": float(slip.max()),
+            f"{stud.name}_preload_against_separation_rigid_face_N": float(opening[0]),
+            f"{stud.name}_preload_against_separation_worst_split_N": float(opening.max()),
+        }
     return needed
 
 
-def _worst(load: Floats) -> float:
-    return float(max(load.max(), 0.0))
+def _worst(load: Floats) -> Floats:
+    """Largest load over the cases for each split, nothing below zero."""
+    result: Floats = np.maximum(load.max(axis=1), 0.0)
+    return result
 
 
 def _twist(case: Case, cases: LoadCases, material: Material | None) -> dict[str, float]:

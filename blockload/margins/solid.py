@@ -17,7 +17,7 @@ from .hotspots import peaks_apart
 from .model import Margin, SurfaceMargins
 from .places import Atlas, atlas, place_name, trust_of
 from .strength import CRITERIA, Criterion, Peaks, allowables, peaks, shares
-from .wording import INCREMENT, causes
+from .wording import INCREMENT, causes, margin_at
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -77,6 +77,8 @@ def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library
     variant = int(ratio.argmax())
     case_index = int(field.peaks.case[entry, variant])
     applied = float(field.peaks.worst[entry, variant])
+    strength, factor = float(field.strength[entry]), float(field.factor[entry])
+    low, high = (margin_at(strength, factor, float(end)) for end in (applied, field.peaks.worst[entry].min()))
     state = pads.weights[variant, case_index]
     at = library.surface_points[library.entry_node[entry]]
     split = shares(field.criterion, np.asarray(library.stress[entry]).dot(state.T).T)
@@ -85,21 +87,21 @@ def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library
     )
     second = None
     if len(cases.names) > 1:
-        value = field.factor[entry] * field.peaks.second[entry, variant]
+        value = float(field.peaks.second[entry, variant])
         if value > 0.0:
             name = cases.names[field.peaks.second_case[entry, variant]]
-            second = (name, float(field.strength[entry] / value - 1.0))
+            second = (name, margin_at(strength, factor, value))
     return Margin(
         criterion=field.criterion.name,
         place=place_name(where, at, library.volumes[library.entry_volume[entry]]),
         at=(float(at[0]), float(at[1]), float(at[2])),
         load_case=cases.names[case_index],
         applied=applied,
-        allowable=float(field.strength[entry]),
+        allowable=strength,
         unit="Pa",
-        factor=float(field.factor[entry]),
-        margin=float(1.0 / ratio.max() - 1.0),
-        band=(float(1.0 / ratio.max() - 1.0), float(1.0 / max(ratio.min(), 1e-12) - 1.0)),
+        factor=factor,
+        margin=low,
+        band=(low, high),
         trust=trust,
         causes=causes(pads.sources, split),
         second=second,

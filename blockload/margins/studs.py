@@ -27,7 +27,7 @@ from ..response.model import Library
 from .fasteners import Fastener, fastener
 from .model import Margin
 from .splits import Split, installed_splits, rigid_splits
-from .wording import INCREMENT, causes
+from .wording import INCREMENT, causes, margin_at
 
 SHEAR, AXIAL = slice(1, 3), 0
 
@@ -139,7 +139,7 @@ def stud_margins(
                 margin_of(row, of, forces, place=place, at=at, names=cases.names, sources=sources)
                 for row in criteria(of, case.limits)
             ]
-    return (*found, *face_moment_margins(case, cases))
+    return tuple(found)
 
 
 def margin_of(
@@ -158,10 +158,10 @@ def margin_of(
     split = int(worst.argmax())
     ranked = np.argsort(-loads[split], kind="stable")
     applied = float(worst[split])
-    ends = [_ratio(row, value) for value in (worst.max(), worst.min())]
+    ends = [margin_at(row.allowable, row.factor, value) for value in (worst.max(), worst.min())]
     second = None
     if len(ranked) > 1 and loads[split][ranked[1]] > 0.0:
-        second = (names[ranked[1]], _ratio(row, loads[split][ranked[1]]))
+        second = (names[ranked[1]], margin_at(row.allowable, row.factor, loads[split][ranked[1]]))
     bare = applied <= 0.0 < row.allowable
     return Margin(
         criterion=row.name,
@@ -182,39 +182,6 @@ def margin_of(
     )
 
 
-def face_moment_margins(case: Case, cases: LoadCases) -> tuple[Margin, ...]:
-    """Return the margin of a supplier's limit on the bending moment of each face, √(M_sag² + M_lat²)."""
-    limit = case.limits.face_moment
-    if limit is None:
-        return ()
-    found = []
-    for name, loads in cases.faces.items():
-        moments = loads.wrench[..., 4:]
-        size = np.linalg.norm(moments.sum(axis=1), axis=-1)
-        worst = int(size.argmax())
-        value = 1.0 / max(case.limits.bolt_factor * float(size[worst]) / limit, 1e-12) - 1.0
-        along = moments[worst] @ moments[worst].sum(axis=0) / max(float(size[worst]) ** 2, 1e-300)
-        found.append(
-            Margin(
-                criterion="face moment limit",
-                place=f"{name} face",
-                at=(float(loads.reference[0]), float(loads.reference[1]), float(loads.reference[2])),
-                load_case=cases.names[worst],
-                applied=float(size[worst]),
-                allowable=limit,
-                unit="N·m",
-                factor=case.limits.bolt_factor,
-                margin=value,
-                band=(value, value),
-                trust="converged",
-                causes=causes(cases.sources, along),
-                method="resultant bending moment about the studs' centroid against the supplier's limit",
-                note=INCREMENT,
-            )
-        )
-    return tuple(found)
-
-
 def _supplier(name: str, load: Callable[[Joint, Floats], Floats], allowable: float, factor: float) -> StudCriterion:
     return StudCriterion(
         name=name, load=load, allowable=allowable, factor=factor, method="supplier's own allowable at one stud"
@@ -228,13 +195,6 @@ def _axial_size(_of: Joint, force: Floats) -> Floats:
 def _shear_size(_of: Joint, force: Floats) -> Floats:
     result: Floats = np.linalg.norm(force[..., SHEAR], axis=-1)
     return result
-
-
-def _ratio(row: StudCriterion, load: float) -> float:
-    """Margin of one load; a stud whose preload already uses the allowable up is left with minus one."""
-    if row.allowable <= 0.0:
-        return -1.0
-    return float(row.allowable / (row.factor * max(load, 1e-9 * row.allowable)) - 1.0)
 
 
 def _shares(row: StudCriterion, of: Joint, parts: Floats) -> Floats:

@@ -1,7 +1,7 @@
-"""What is measured on every run and can fail: loads, library, installation and the field inside the block.
+"""What is measured on every installed block and can fail: library, installation and the field inside the block.
 
-Each check has a limit that a right analysis meets by orders of magnitude: the balance of loads 1e-6, identities of
-the dense algebra 1e-9, those of the field 1e-6.
+Each check has a limit that a right analysis meets by orders of magnitude: identities of the dense algebra 1e-9, those
+of the field 1e-6.
 """
 
 from __future__ import annotations
@@ -18,9 +18,9 @@ from ..installation.proof import face_sum
 from ..response.cuts import section_cut
 from ..response.model import Library
 from ..response.spreading import unit_wrenches
+from .load_checks import below
 
-WHEEL_CHECK = "load cases with a wheel load below zero"
-BALANCE, IDENTITY, FIELD = 1e-6, 1e-9, 1e-6
+IDENTITY, FIELD = 1e-9, 1e-6
 
 # Name in Library.checks: what it says, and its limit.
 LIBRARY_CHECKS = {
@@ -34,30 +34,12 @@ LIBRARY_CHECKS = {
 }
 
 
-def load_checks(case: Case, cases: LoadCases) -> Iterator[Check]:
-    """Yield the checks of the car's loads alone."""
-    worst = int(np.argmax(cases.residual))
-    yield _below("loads in balance on every body", cases.residual[worst], BALANCE, f"worst in {cases.names[worst]}")
-    yield _below(
-        "face wrenches equal from the front and from the rear", np.max(cases.front_rear_gap, initial=0.0), BALANCE
-    )
-    lifted = lifted_cases(cases)
-    note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
-    yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
-    yield from _sign(cases)
-
-
-def lifted_cases(cases: LoadCases) -> tuple[str, ...]:
-    """Return the load cases in which the ground would have to pull at a wheel."""
-    return tuple(name for name, lifted in zip(cases.names, cases.wheel_lift, strict=False) if lifted)
-
-
 def solid_checks(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
     """Yield the checks of library, installation and field."""
     for name, value in library.checks.items():
         text, limit = LIBRARY_CHECKS.get(name, (name, FIELD))
-        yield _below(text, value, limit)
-    yield _below(
+        yield below(text, value, limit)
+    yield below(
         "flexibility is the average motion of the attachments", flexibility_gap(block, library), FIELD, "recomputed"
     )
     yield from _installed(case, cases, block, library, pads)
@@ -81,7 +63,7 @@ def flexibility_gap(block: Block, library: Library) -> float:
 
 
 def _installed(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
-    yield _below("installed system solved: residual", pads.checks["residual"], IDENTITY)
+    yield below("installed system solved: residual", pads.checks["residual"], IDENTITY)
     for face in ("front", "rear"):
         loads = cases.faces[face]
         state = pads.weights[pads.middle].sum(axis=1)
@@ -92,18 +74,18 @@ def _installed(case: Case, cases: LoadCases, block: Block, library: Library, pad
         note = f"{cases.names[worst]}: pads {force / 1e3:.4g} kN, statics {statics / 1e3:.4g} kN"
         if case.paths:
             note += ", less what the second paths carry"
-        yield _below(f"{face} pads sum to the face wrench", pads.checks[f"sum {face}"], IDENTITY, note)
-    yield _below(
+        yield below(f"{face} pads sum to the face wrench", pads.checks[f"sum {face}"], IDENTITY, note)
+    yield below(
         "inertia counted once: relief acceleration is the engine's own a - g and alpha", pads.relief_gap, IDENTITY
     )
 
 
 def _metal(case: Case, block: Block, pads: PadLoads) -> Iterator[Check]:
     for name in ("mass", "cg", "inertia"):
-        yield _below(f"mesh {name} as the library was solved with", pads.checks[name], IDENTITY)
+        yield below(f"mesh {name} as the library was solved with", pads.checks[name], IDENTITY)
     engine = case.bodies["engine"]
     total = block.mass + sum(item.mass for item in block.carried)
-    yield _below(
+    yield below(
         "mesh and carried masses add up to the engine",
         abs(total / engine.mass - 1.0),
         IDENTITY,
@@ -122,27 +104,4 @@ def _cut(cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Ch
     arm = np.linalg.norm(front - rear) / 2.0
     scale = np.array([1.0, 1.0, 1.0, *[1.0 / arm] * 3])
     gap = np.abs((cut.found - cut.expected) * scale).max() / max(np.abs(cut.expected * scale).max(), 1e-300)
-    return _below("element forces across mid-length equal the section wrench", gap, FIELD)
-
-
-def _sign(cases: LoadCases) -> Iterator[Check]:
-    """The trade's sign: where the front face sags most, its upper studs are pressed and its lower ones pulled."""
-    face = cases.faces["front"]
-    sag = cases.section("front")[:, 4]
-    worst = int(np.argmax(sag))
-    if sag[worst] <= 0.0:
-        return
-    height = face.stud_at[:, -1] - face.stud_at[:, -1].mean()
-    couple = -float(face.stud_axial[worst].sum(axis=0) @ height)
-    yield Check(
-        name="sagging presses the upper studs and pulls the lower ones",
-        ok=abs(couple / sag[worst] - 1.0) < FIELD,
-        value=couple / float(sag[worst]),
-        limit=1.0,
-        note=f"studs' couple over M_sag in {cases.names[worst]}",
-    )
-
-
-def _below(name: str, value: float, limit: float, note: str = "") -> Check:
-    number = float(value)
-    return Check(name=name, ok=bool(number <= limit), value=number, limit=limit, note=note)
+    return below("element forces across mid-length equal the section wrench", gap, FIELD)

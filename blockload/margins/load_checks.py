@@ -1,0 +1,55 @@
+"""What is measured on the car's loads on every run and can fail, with the limit each must meet."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from ..car.model import LoadCases
+from ..case.model import Check
+
+WHEEL_CHECK = "load cases with a wheel load below zero"
+BALANCE = 1e-6
+
+
+def load_checks(cases: LoadCases) -> Iterator[Check]:
+    """Yield the checks of the car's loads alone."""
+    worst = int(np.argmax(cases.residual))
+    yield below("loads in balance on every body", cases.residual[worst], BALANCE, f"worst in {cases.names[worst]}")
+    yield below(
+        "face wrenches equal from the front and from the rear", np.max(cases.front_rear_gap, initial=0.0), BALANCE
+    )
+    lifted = lifted_cases(cases)
+    note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
+    yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
+    yield from _sign(cases)
+
+
+def lifted_cases(cases: LoadCases) -> tuple[str, ...]:
+    """Return the load cases in which the ground would have to pull at a wheel."""
+    return tuple(name for name, lifted in zip(cases.names, cases.wheel_lift, strict=False) if lifted)
+
+
+def _sign(cases: LoadCases) -> Iterator[Check]:
+    """The trade's sign: where the front face sags most, its upper studs are pressed and its lower ones pulled."""
+    face = cases.faces["front"]
+    sag = cases.section("front")[:, 4]
+    worst = int(np.argmax(sag))
+    if sag[worst] <= 0.0:
+        return
+    height = face.stud_at[:, -1] - face.stud_at[:, -1].mean()
+    couple = -float(face.stud_axial[worst].sum(axis=0) @ height)
+    yield Check(
+        name="sagging presses the upper studs and pulls the lower ones",
+        ok=bool(abs(couple / sag[worst] - 1.0) < BALANCE),
+        value=couple / float(sag[worst]),
+        limit=1.0,
+        note=f"studs' couple over M_sag in {cases.names[worst]}",
+    )
+
+
+def below(name: str, value: float, limit: float, note: str = "") -> Check:
+    """Return a check that passes at or below its limit."""
+    number = float(value)
+    return Check(name=name, ok=bool(number <= limit), value=number, limit=limit, note=note)
