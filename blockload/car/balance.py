@@ -23,6 +23,7 @@ from .faces import chain_loads, face_loads, front_rear_gap
 from .manoeuvres import Inputs, read
 from .model import LoadCases
 from .residual import refuse, residuals
+from .ride_height import in_the_air
 from .sources import elementary, source_names
 from .suspension import axle_maps, body_wrenches, corner_wrenches, link_loads
 from .terms import body_terms, crank_terms, face_terms, pickup_terms, wheel_terms
@@ -38,6 +39,7 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
     check_devices(case)
     inputs = read(case, case.manoeuvres if manoeuvres is None else manoeuvres)
     car, frame = masses(case), chassis(case)
+    inputs = in_the_air(case, inputs, car)
     names = source_names(case, inputs)
     loads = elementary(case, inputs, names, car, frame)
     whole = loads
@@ -67,8 +69,8 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
         names=inputs.names,
         sources=names,
         speed=inputs.speed,
-        downforce=_aero(case, inputs, "downforce"),
-        drag=_aero(case, inputs, "drag"),
+        downforce=_aero(inputs, "downforce"),
+        drag=_aero(inputs, "drag"),
         acceleration=sealed(loads.motion[..., :3]),
         angular_acceleration=sealed(loads.motion[..., 3:]),
         engine_acceleration=sealed(loads.engine_motion[..., :3]),
@@ -86,9 +88,9 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
     )
 
 
-def _aero(case: Case, inputs: Inputs, kind: str) -> Floats:
-    area = sum(getattr(device, f"{kind}_area") for device in case.devices)
-    return sealed(inputs.pressure * area * inputs.keep[kind])
+def _aero(inputs: Inputs, kind: str) -> Floats:
+    part, axis = (0, 2) if kind == "downforce" else (1, 0)
+    return sealed(-inputs.pressure * inputs.air.area[:, :, part, axis].sum(axis=1) * inputs.keep[kind])
 
 
 def _turning(inputs: Inputs) -> Floats:

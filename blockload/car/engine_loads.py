@@ -6,7 +6,7 @@ import numpy as np
 
 from ..arrays import Floats
 from ..case.model import CORNERS, Case
-from .aero import device_force
+from .aero import device_load
 from .bodies import Chassis
 from .manoeuvres import Inputs
 from .model import LocalLoad
@@ -26,7 +26,7 @@ def engine_loads(
     for k, device in enumerate(case.devices):
         if device.on == "engine":
             load = np.zeros((*shaft.shape[:2], 6))
-            load[:, k, :3] = device_force(device, inputs)
+            load[:, k] = np.hstack(device_load(k, inputs.air, inputs.pressure, inputs.keep))
             result.append(_local(f"aero.{device.name}", device.attachment, device.at, load))
     for axle in maps:
         for pickup in axle.pickups:

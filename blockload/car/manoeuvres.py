@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from ..arrays import Floats, frozen
 from ..case.model import CORNERS, Case, Manoeuvre
 from ..errors import CaseError, nearest
+from .aero import Air, constant_air
 
 DRIVEN = {"front": (1.0, 0.0), "rear": (0.0, 1.0)}  # shares of the driving force on the front and rear axle
 KINDS = ("downforce", "drag", "weight", "inertia", "crank", "crank_inertia", "extra")
@@ -27,7 +28,8 @@ class Inputs:
     """What the drivers and roads of all load cases do.
 
     speed, pressure (dynamic, Pa), ratio (nan: not given), crank_rate (rad/s^2), coast, brake: (C,);
-    acceleration (C, 3); extra (C, 4, 3), at the contact points; keep maps each kind of load to (C,) ones and zeros.
+    acceleration (C, 3); extra (C, 4, 3), at the contact points; yaw, steer (rad) and state (None: none named) say where
+    aero maps are read, and air what they give; keep maps each kind of load to (C,) ones and zeros.
     """
 
     names: tuple[str, ...]
@@ -39,6 +41,10 @@ class Inputs:
     ratio: Floats
     crank_rate: Floats
     extra: Floats
+    yaw: Floats
+    steer: Floats
+    state: tuple[str | None, ...]
+    air: Air
     keep: Mapping[str, Floats]
 
     def whole(self) -> Inputs:
@@ -70,6 +76,10 @@ def read(case: Case, manoeuvres: Sequence[Manoeuvre]) -> Inputs:
         ratio=np.array([np.nan if m.overall_ratio is None else m.overall_ratio for m in manoeuvres], dtype=float),
         crank_rate=np.array([m.crank_acceleration for m in manoeuvres], dtype=float),
         extra=extra,
+        yaw=np.array([m.yaw for m in manoeuvres], dtype=float),
+        steer=np.array([m.steer for m in manoeuvres], dtype=float),
+        state=tuple(m.state for m in manoeuvres),
+        air=constant_air(case, len(manoeuvres)),
         keep={kind: np.array([kind in kinds for kinds in kept], dtype=float) for kind in KINDS},
     )
 

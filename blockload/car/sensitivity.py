@@ -36,7 +36,9 @@ def per_drag(case: Case) -> Sensitivity:
 
 def _per_newton(case: Case, kind: str) -> Sensitivity:
     down, drag = (1.0, 0.0) if kind == "downforce" else (0.0, 1.0)
-    devices = tuple(replace(device, downforce_area=down, drag_area=drag) for device in case.devices)
+    devices = tuple(
+        replace(device, downforce_area=down, drag_area=drag, map=None, table=None) for device in case.devices
+    )
     unit = Manoeuvre(name=f"one newton of {kind} on each device", speed=1.0, acceleration=np.zeros(3), parts=(kind,))
     cases = balance(replace(case, air_density=2.0, devices=devices), [unit])
     return Sensitivity(

@@ -15,7 +15,7 @@ import numpy as np
 
 from ..arrays import Floats
 from ..case.model import CARRIERS, CORNERS, Case
-from .aero import device_force
+from .aero import device_load
 from .bodies import BODY_SOURCES, Chassis, Masses
 from .crank import inertia_couple
 from .manoeuvres import Inputs
@@ -88,8 +88,10 @@ def _cross(vectors: Floats) -> Floats:
 
 def _add_devices(result: Elementary, case: Case, inputs: Inputs, car: Masses) -> None:
     for k, device in enumerate(case.devices):
-        force = device_force(device, inputs)
-        result.loads[:, k, CARRIERS.index(device.on)] = wrench(force, device.at)
+        force, moment = device_load(k, inputs.air, inputs.pressure, inputs.keep)
+        body = result.loads[:, k, CARRIERS.index(device.on)]
+        body[:] = wrench(force, device.at)
+        body[:, 3:] += moment
         slowing = np.where(inputs.coast, force[:, 0] / car.total, 0.0)
         result.motion[:, k, 0] = result.engine_motion[:, k, 0] = slowing
         # no rotation: the wheels answer the pitching couple of the drag

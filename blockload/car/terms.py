@@ -10,7 +10,7 @@ import numpy as np
 
 from ..arrays import Floats, frozen
 from ..case.model import CORNERS, Case
-from .aero import device_force
+from .aero import device_load
 from .bodies import Chassis, Masses
 from .manoeuvres import Inputs
 from .model import BODIES, FaceLoads, Term
@@ -31,9 +31,9 @@ def body_terms(case: Case, inputs: Inputs, car: Masses, motion: Floats) -> list[
         inertia = -car.mass[b] * (motion[:, :3] + np.cross(motion[:, 3:], arm))
         result.append(_term(body, "weight", car.cg[b], weight))
         result.append(_term(body, "inertia", car.cg[b], inertia, -motion[:, 3:] @ car.inertia[b].T))
-    for device in case.devices:
-        label = f"aero.{device.name}"
-        result += [_term(device.on, label, device.at, device_force(device, inputs))]
+    for k, device in enumerate(case.devices):
+        load = device_load(k, inputs.air, inputs.pressure, inputs.keep)
+        result.append(_term(device.on, f"aero.{device.name}", device.at, *load))
     return result
 
 
