@@ -51,7 +51,7 @@ def two_bodies(
     matrix[12, 7:10], matrix[12, 10:13] = _least_bending(along[fore], along[aft], inboard[fore] - inboard[aft])
     unknowns = (*(LINKS[j] for j in upright), *(wishbone,) * 3, "pushrod", *(LINKS[fore],) * 3, *(LINKS[aft],) * 3)
     condition = checked_condition(matrix, unknowns, where)
-    solved: Floats = -np.linalg.inv(matrix)[:, :6]
+    solved = frozen(-np.linalg.inv(matrix)[:, :6])
     return _corner_map(solved, upright, (fore, aft), along, inboard, condition)
 
 
