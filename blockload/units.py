@@ -179,6 +179,7 @@ def parse(value: Any, kind: str, where: str) -> float | Floats:
     ------
     CaseError
         With the corrected text where it can be guessed.
+
     """
     wanted = KINDS[kind]
     numbers, unit = _numbers(value, wanted, where)
@@ -216,7 +217,7 @@ def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
         raise CaseError(where, f"{value!r} uses g", _form(kind), remedy)
     unit = UNITS.get(name)
     if unit is None:
-        if re.search(r"[\d,;.+()]", text) and not _UNIT_TEXT.fullmatch(name) or _STRAY_DIGIT.search(name):
+        if (re.search(r"[\d,;.+()]", text) and not _UNIT_TEXT.fullmatch(name)) or _STRAY_DIGIT.search(name):
             _refuse(value, kind, where)
         unit = _rare_unit(name)
     if not name and kind.dimension != _NONE:
@@ -265,7 +266,7 @@ def _refuse(value: str, kind: Kind, where: str) -> NoReturn:
 
 
 def _diagnosis(value: str, kind: Kind) -> tuple[str, str]:
-    text = value.strip().replace("−", "-").replace("–", "-")  # noqa: RUF001
+    text = value.strip().replace("−", "-").replace("–", "-")
     if not re.search(r"\d", text):
         return "has no number", f"the number before the unit, as in '1 {kind.si}'".replace(" '", " '")
     if text != value.strip() and (_ONE.fullmatch(text) or _MANY.fullmatch(text)):
@@ -343,7 +344,7 @@ def _quoted(value: Any) -> str:
 
 
 def show(value: float, unit: str, digits: int = 3) -> str:
-    """Return an SI value as text in the given unit, to a number of significant figures: show(26500, "kN") is "26.5 kN"."""
+    """Return an SI value as text in the given unit, to some significant figures: 26500 in "kN" is "26.5 kN"."""
     return f"{significant(_from_si(value, unit), digits)} {unit}".rstrip()
 
 

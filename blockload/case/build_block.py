@@ -16,7 +16,6 @@ from .messages import is_key, nearest_key
 from .model import (
     BlockSpec,
     Carried,
-    Check,
     Face,
     Installation,
     Known,
@@ -225,8 +224,9 @@ _OPTIONAL = ("torsion_min", "bending_min", "twist_share", "stud_axial", "stud_sh
 def build_limits(table: CaseTable, notes: Notes) -> Limits:
     """Return factors, with their defaults noted, and the allowables that are given."""
     given = table.limits
-    factors = {name: notes.take(given, LimitsTable, "limits", name) for name in _FACTORS}
-    return Limits(**factors, **{name: getattr(given, name, None) for name in _OPTIONAL})
+    factors: dict[str, Any] = {name: notes.take(given, LimitsTable, "limits", name) for name in _FACTORS}
+    factors |= {name: getattr(given, name, None) for name in _OPTIONAL}
+    return Limits(**factors)
 
 
 def build_known(table: CaseTable, notes: Notes) -> dict[str, Known]:
@@ -239,11 +239,3 @@ def build_known(table: CaseTable, notes: Notes) -> dict[str, Known]:
         source = notes.take(item, KnownTable, place, "source")
         known[key] = Known(key=key, basis=item.basis, source=source or "unsourced", band=item.band)
     return known
-
-
-def note_unused(table: CaseTable, notes: Notes) -> None:
-    """Say by failing checks what the file describes that no result contains."""
-    for name, item in table.aero.items():
-        if item.map is not None and item.downforce_area is None and item.downforce is None:
-            note = "the map is not used yet, so this device presses nothing"
-            notes.checks.append(Check(name=f"aero.{name} map", ok=False, value=0.0, limit=0.0, note=note))

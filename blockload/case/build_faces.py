@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import replace
 from typing import Any
@@ -15,7 +16,7 @@ from .fasteners import proof_load
 from .model import FACES, Face, Stud
 from .notes import Notes, key_of
 from .schema_block import FacesTable, FaceTable, OneStudTable, StudTable
-from .tables import metas
+from .tables import Share, metas
 
 PRELOAD_SHARES = ("50 %", "62.5 %", "75 %")
 PRELOAD_REASON = "share of the proof load (ISO 898-1); up to 75 % for reused studs (Shigley, eq. 8-31); 50 % unsourced"
@@ -84,9 +85,10 @@ def _stud(
 def _preload(values: Mapping[str, Any], key: str, notes: Notes) -> float:
     where = notes.where(key)
     proof = proof_load(values["size"], values["property_class"], where)
-    given = values["preload"] if values["preload"] is not None else PRELOAD_SHARES[1]
-    share = isinstance(given, str) and given.strip().endswith("%")
-    preload = float(parse(given, "ratio", where)) * proof if share else float(parse(given, "force", where))
+    given = values["preload"]
+    if given is None:
+        given = Share(float(parse(PRELOAD_SHARES[1], "ratio", where)))
+    preload: float = given.value * proof if isinstance(given, Share) else given
     if not 0.0 <= preload <= 1.05 * proof:
         stud = f"{values['size']} {values['property_class']}"
         found = f"a preload of {show(preload, 'kN')} is beyond 1.05 times the proof load of {stud}"
@@ -96,17 +98,18 @@ def _preload(values: Mapping[str, Any], key: str, notes: Notes) -> float:
 
 def side_of(name: str) -> int:
     """Return +1 for a name that says left, -1 for right, 0 for neither: TL, bottom_left, ML."""
-    word = name.lower()
-    if name.endswith("L") or word.endswith(("left", "_l")):
-        return 1
-    return -1 if name.endswith("R") or word.endswith(("right", "_r")) else 0
+    match = re.fullmatch(r"(?:[A-Z]{0,2}\d*|.*[a-z0-9_. -])([LR])|.*[_. -]([lr])|(?i:.*(left|right))", name)
+    if match is None:
+        return 0
+    word = next(item for item in match.groups() if item)
+    return 1 if word[0] in "Ll" else -1
 
 
 def _mirrored(face: str, studs: tuple[Stud, ...], notes: Notes) -> tuple[Stud, ...]:
     both: list[Stud] = []
     for stud in studs:
         both.append(stud)
-        if stud.name.endswith("L"):
+        if side_of(stud.name) > 0 and stud.name.endswith("L"):
             both.append(replace(stud, name=stud.name[:-1] + "R", at=frozen(stud.at * (-1.0, 1.0))))
     if len({stud.name for stud in both}) < len(both):
         found = "mirrored = true, yet some studs on the right are written too"
@@ -119,7 +122,8 @@ def _check_pattern(face: str, studs: tuple[Stud, ...], notes: Notes) -> None:
         side = side_of(stud.name)
         if side and side * stud.at[0] <= 0.0:
             said, lies = ("left", "right") if side > 0 else ("right", "left")
-            found = f"stud {stud.name} is named for the {said} but sits at y = {show(float(stud.at[0]), 'mm')}, on the {lies}"
+            place = show(float(stud.at[0]), "mm")
+            found = f"stud {stud.name} is named for the {said} but sits at y = {place}, on the {lies}"
             allowed = "y points to the car's left: names in L at +y, names in R at -y"
             remedy = "swap name or sign, or state this file's axes in [frame]"
             notes.problem(key_of("faces", face, "studs", stud.name), found, allowed, remedy)

@@ -9,7 +9,7 @@ import numpy as np
 
 from ..arrays import frozen
 from ..units import show
-from .model import AeroTotal, Axle, Check, Device, Drive, Manoeuvre
+from .model import AeroMap, AeroTotal, Axle, Check, Device, Drive, Manoeuvre
 from .notes import Notes, key_of
 from .schema import CaseTable
 from .schema_car import DriveTable
@@ -26,7 +26,7 @@ def build_devices(table: CaseTable, folder: Path, air_density: float, notes: Not
 
 def _device(name: str, item: DeviceTable, folder: Path, air_density: float, notes: Notes) -> Device:
     key = key_of("aero", name)
-    areas = {}
+    areas = {"downforce": 0.0, "drag": 0.0}
     for word in ("downforce", "drag"):
         area, force = getattr(item, f"{word}_area"), getattr(item, word)
         if area is not None and force is not None:
@@ -37,7 +37,7 @@ def _device(name: str, item: DeviceTable, folder: Path, air_density: float, note
             notes.problem(f"{key}.at_speed", f"{word} is given without the speed it holds at", "at_speed", remedy)
         elif force is not None and item.at_speed is not None:
             area = force / (0.5 * air_density * item.at_speed**2)
-        areas[f"{word}_area"] = area if area is not None else 0.0
+        areas[word] = area if area is not None else 0.0
     if item.map is None and not any(areas.values()) and item.downforce is None and item.drag is None:
         remedy = f'add downforce_area = "1.3 m^2" or drag_area under [{key}]'
         notes.problem(key, "the device has neither downforce nor drag", "an area, a force at a speed, or a map", remedy)
@@ -51,8 +51,16 @@ def _device(name: str, item: DeviceTable, folder: Path, air_density: float, note
         attachment=item.attachment,
         map=folder / item.map if item.map is not None else None,
         outside=item.outside or "refuse",
-        **areas,
+        downforce_area=areas["downforce"],
+        drag_area=areas["drag"],
+        table=_map(folder / item.map, name, notes.where(f"{key}.map")) if item.map is not None else None,
     )
+
+
+def _map(path: Path, device: str, where: str) -> AeroMap:
+    from .aero_csv import read_map
+
+    return read_map(path, device, where)
 
 
 def build_aero_split(table: CaseTable) -> tuple[Device, ...]:

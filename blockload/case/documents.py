@@ -30,6 +30,7 @@ def layers(path: Path) -> tuple[Layer, ...]:
     ------
     CaseError
         If a file is missing, is no TOML, or extends itself in a circle.
+
     """
     found: list[Layer] = []
     seen: list[Path] = []
@@ -84,6 +85,7 @@ def split_key(key: str, place: str) -> tuple[str, ...]:
     ------
     CaseError
         If the text is no dotted key.
+
     """
     try:
         tree = tomllib.loads(f"{key} = 0") if "=" not in key and "\n" not in key else {}
@@ -114,6 +116,7 @@ def override(text: str) -> Document:
     ------
     CaseError
         If there is no "=" or the key is none.
+
     """
     place = f"--set {text}"
     match = re.match(r"""((?:[^="']|"[^"]*"|'[^']*')+)=(.*)""", text, re.DOTALL)

@@ -33,6 +33,7 @@ def dimensions(size: str, where: str) -> tuple[float, float]:
     ------
     CaseError
         If the size is none, or has no coarse pitch here.
+
     """
     pitches = {name: value for name, value in _data()["pitch"].items() if name != "source"}
     match = re.fullmatch(r"(M(\d+(?:\.\d+)?))(?:\s?[x×]\s?(\d+(?:\.\d+)?))?", size.strip())
@@ -53,6 +54,7 @@ def proof_load(size: str, property_class: str, where: str) -> float:
     ------
     CaseError
         If size or property class is unknown.
+
     """
     diameter, pitch = dimensions(size, where)
     rows = _data()["class"]

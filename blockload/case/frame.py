@@ -50,6 +50,7 @@ def read_frame(document: Mapping[str, Any], path: Path) -> Frame | None:
     ------
     CaseError
         If axes, origin or points cannot be used.
+
     """
     table = document.get("frame")
     if not isinstance(table, Mapping):
@@ -69,7 +70,14 @@ def read_frame(document: Mapping[str, Any], path: Path) -> Frame | None:
 
 
 def rotation_of(axes: Any, where: str) -> Floats:
-    """Return the rotation (3, 3) from axes in words, "x rearward, y right, z up", to the car's own."""
+    """Return the rotation (3, 3) from axes named in words, as in "x rearward, y right, z up", to the car's.
+
+    Raises
+    ------
+    CaseError
+        If the words do not name a right-handed frame with x along the car.
+
+    """
     if not isinstance(axes, str):
         raise CaseError(where, f"{axes!r} is not text", _ALLOWED)
     pairs = [item.split() for item in re.split(r"[,;]", axes)]
@@ -109,6 +117,7 @@ def read_points(content: bytes, path: Path) -> dict[str, Floats]:
     ------
     CaseError
         With the line number.
+
     """
     try:
         text = content.decode("utf-8-sig")
@@ -129,7 +138,7 @@ def read_points(content: bytes, path: Path) -> dict[str, Floats]:
             raise CaseError(where, f"{line.strip()!r} has {len(cells)} cells", "four: name,x,y,z", remedy)
         if cells[0] in points:
             raise CaseError(where, f"point {cells[0]!r} stands twice", "each name once", "rename one of them")
-        points[cells[0]] = frozen([parse(f"{cell} {unit}", "length", where) for cell in cells[1:]])
+        points[cells[0]] = frozen([float(parse(f"{cell} {unit}", "length", where)) for cell in cells[1:]])
     return points
 
 

@@ -1,20 +1,22 @@
-"""From a case file to a Case: layers merged, turned into the car's axes, checked by the schema, built, cross-checked."""
+"""From a case file to a Case: layers merged, turned into the car's axes, checked by the schema, built, compared."""
 
 from __future__ import annotations
 
 import hashlib
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from pydantic import ValidationError
 
 from ..errors import CaseError
-from .build_block import build_block, build_installation, build_known, build_limits, build_paths, note_unused
-from .build_car import build_car
+from .build_axles import build_axles
+from .build_block import build_block, build_installation, build_known, build_limits, build_paths
+from .build_bodies import build_bodies, total_mass
 from .build_faces import build_faces
 from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_manoeuvres
-from .documents import Document, Layer, join_key, layers, literal, merged, nested, override, split_key
+from .documents import Document, Layer, layers, literal, merged, nested, override, split_key
 from .frame import Frame, read_frame, to_car
 from .messages import refusals, together
 from .model import Case, Engine
@@ -38,6 +40,7 @@ def read(path: str | Path, overrides: Sequence[str] = ()) -> Case:
     ------
     CaseError
         Saying which file, table and key, what was found, what is allowed and what to do.
+
     """
     path = Path(path)
     found = layers(path)
@@ -61,10 +64,13 @@ def replaced(case: Case, key: str, text: str) -> Case:
 
     Parameters
     ----------
+    case : Case
+        The case to start from; it is not changed.
     key : str
         Dotted key, such as "bodies.gearbox.mass"; parts may stand in quotes.
     text : str
         The value, a TOML literal or a plain text such as "130 kg", in the case file's own frame.
+
     """
     place = f"{case.path}, {key}"
     change = nested(split_key(key, place), literal(text))
@@ -155,7 +161,14 @@ def _assembled(
     folder = path.parent
     air_density = notes.take(table, CaseTable, "", "air_density")
     faces = build_faces(table.faces, notes)
-    bodies, axles = build_car(table, faces, notes)
+    total = total_mass(table, notes)
+    if table.axles.rear.x is None:
+        remedy = "add x under [axles.rear]: minus the wheelbase, with the front axle at 0"
+        notes.problem("axles.rear.x", "the wheelbase is not given", "1.5 m to 4 m behind the front axle", remedy)
+    if notes.problems or total is None:
+        return None
+    axles = build_axles(table, total, notes)
+    bodies = build_bodies(table, axles, faces, total, notes)
     if not bodies:
         return None
     check_car(bodies, axles, faces, table.car, notes)
@@ -190,13 +203,10 @@ def _assembled(
         defaults=(),
         checks=(),
     )
-    note_unused(table, notes)
     return _noted(case, notes)
 
 
 def _noted(case: Case, notes: Notes) -> Case:
-    from dataclasses import replace
-
     return replace(case, bounds=tuple(notes.bounds), defaults=tuple(notes.defaults), checks=tuple(notes.checks))
 
 

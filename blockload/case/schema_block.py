@@ -15,7 +15,13 @@ class StudTable(Table):
 
     size: str | None = words("metric size, coarse pitch unless written M12x1.25; asked", example='"M12"')
     property_class: str | None = words("ISO 898-1 property class; asked", example='"12.9"')
-    preload: Any = words("clamping force, or a percentage of the proof load; bounded when absent", example='"55 kN"')
+    preload: Any = quantity(
+        "force",
+        "clamping force, or a percentage of the proof load; bounded when absent",
+        share=True,
+        example='"55 kN"',
+        band=("0 kN", "1000 kN"),
+    )
     preload_scatter: float | None = quantity(
         "ratio",
         "scatter of the preload",

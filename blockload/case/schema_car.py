@@ -117,6 +117,15 @@ class LinkTable(Table):
         band=("-10 m", "10 m"),
     )
     carried_by: Carrier | None = words("body of the inboard end; the axle's carrier when absent", example='"gearbox"')
+    meets: Literal["upright", "upper", "lower"] | None = words(
+        "what the outboard end sits on: the upright, or a wishbone that a push or pull rod works on",
+        default="upright",
+        source="all six end at the upright",
+        example='"lower"',
+    )
+    attachments: list[str] | None = words(
+        "where the left and the right one enter the block, when the engine carries them", example='["pick_l", "pick_r"]'
+    )
 
 
 class LinksTable(Table):
@@ -158,6 +167,20 @@ class RockerTable(Table):
     bar_bearing_y: float | None = quantity(
         "length", "y of the bar's left bearing", frame="y", example='"0.18 m"', band=("-2 m", "2 m")
     )
+    heave: Vector | None = quantity(
+        "length_vector",
+        "left rocker's end of an element across both rockers",
+        frame="place",
+        example='"(0, 0.2, 0.55) m"',
+        band=("-10 m", "10 m"),
+    )
+    heave_share: float | None = quantity(
+        "ratio", "that element's part of the rockers' mean torque", example="0.3", band=("0", "1")
+    )
+    attachments: list[str] | None = words(
+        "where the left and the right rocker enter the block, when the engine carries them",
+        example='["rocker_l", "rocker_r"]',
+    )
 
 
 class AxleTable(Table):
@@ -194,9 +217,10 @@ class AxleTable(Table):
         example='"40 mm"',
         band=("-0.3 m", "0.6 m"),
     )
-    roll_stiffness: float | None = quantity(
+    roll_stiffness: Any = quantity(
         "torsional_stiffness",
-        "axle roll stiffness, springs and bar; only the split matters",
+        "axle roll stiffness, springs and bar, or a percentage: this axle's share of both; only the split matters",
+        share=True,
         example='"250 kNm/rad"',
         band=("5 kNm/rad", "10000 kNm/rad"),
     )

@@ -31,7 +31,8 @@ class Meta:
     what a [frame] converts, "path" for a file; short: the key that a bare text stands for in a table of tables;
     default: text used when absent, with `source`; bound: low, middle and high texts used when absent;
     band: least and greatest plausible value (of every component);
-    example: invented value in TOML for the template; many: a list of quantities.
+    example: invented value in TOML for the template; many: a list of quantities; share: a percentage may
+    stand instead, read as a `Share`.
     """
 
     kind: str | None = None
@@ -43,6 +44,14 @@ class Meta:
     source: str = ""
     example: str = ""
     many: bool = False
+    share: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class Share:
+    """A percentage given where a quantity is usual: `value` is the ratio."""
+
+    value: float
 
 
 _PLAIN = Meta()
@@ -64,7 +73,16 @@ class Table(BaseModel):
         if meta.many:
             items = value if isinstance(value, list) else [value]
             return [_within(parse(item, meta.kind, ""), item, meta) for item in items]
+        if meta.share and isinstance(value, str) and value.strip().endswith("%"):
+            return _share(value)
         return _within(parse(value, meta.kind, ""), value, meta)
+
+
+def _share(value: str) -> Share:
+    share = float(parse(value, "ratio", ""))
+    if not 0.0 < share < 1.0:
+        raise CaseError("", f"{value!r} is beyond what a share can be", "above 0 % and below 100 %", "check the number")
+    return Share(share)
 
 
 def _within(read: float | Floats, value: Any, meta: Meta) -> float | Floats:
@@ -116,14 +134,14 @@ def table(text: str, *, needed: bool = False, alias: str | None = None) -> Any:
 
 def tables(text: str, **meta: Any) -> Any:
     """Return a field that holds named tables (or named texts); empty when absent."""
-    info = Field(default_factory=dict, description=text)
+    info: Any = Field(default_factory=dict, description=text)
     info.metadata.append(Meta(**meta))
     return info
 
 
 def _field(text: str, needed: bool, meta: Meta, alias: str | None = None) -> Any:
     default = ... if needed else None
-    info = Field(default=default, description=text, alias=alias)
+    info: Any = Field(default=default, description=text, alias=alias)
     info.metadata.append(meta)
     return info
 
