@@ -21,7 +21,7 @@ from .shape import VeeShape, shape_from
 from .solids import VeeSolids, glued
 
 TO_VTK = [0, 2, 1, 3, 5, 7, 4, 6, 9, 8]
-"""netgen's (01)(02)(03)(12)(13)(23) to (01)(12)(02)(03)(13)(23), with corners 1 and 2 swapped: all come out negative."""
+"""netgen's mid nodes (01)(02)(03)(12)(13)(23) to (01)(12)(02)(03)(13)(23), corners 1, 2 swapped: all come negative."""
 
 
 def mesh_arrays(shape: VeeShape, size: float, settings: dict[str, Any]) -> dict[str, Any]:

@@ -23,17 +23,33 @@ SAFE_SHARE = 0.05
 
 
 def determinant_bound(points: Floats, elements: Ints) -> Floats:
-    """Return each element's lower bound of det J.
+    """Return each element's lower bound of det J, (e,), in the cube of the unit of `points`.
 
-    Parameters
-    ----------
-    points : (n, 3) coordinates.
-    elements : (e, 10) node numbers.
-
-    Returns
-    -------
-    (e,) smallest Bernstein coefficient, in the cube of the unit of `points`; six times the volume if straight.
+    `points` (n, 3), `elements` (e, 10). The smallest Bernstein coefficient; six times the volume if straight.
     """
+    return np.asarray(_bernstein(points, elements).reshape(len(elements), -1).min(axis=1))
+
+
+def least_determinant(points: Floats, elements: Ints) -> Floats:
+    """Return the smallest det J found at corners, mid-edge, face and body points of each element, (e,).
+
+    Where it is not positive the element is inverted for certain; where the bound is negative it may be.
+    """
+    weights = np.array(
+        [
+            np.bincount(group, minlength=4) / len(group)
+            for n in range(1, 5)
+            for group in itertools.combinations(range(4), n)
+        ]
+    )
+    coefficients = _bernstein(points, elements)
+    return np.asarray(
+        np.einsum("ejlm,pj,pl,pm->ep", coefficients, weights, weights, weights, optimize=True).min(axis=1)
+    )
+
+
+def _bernstein(points: Floats, elements: Ints) -> Floats:
+    """Return the symmetric coefficients of det J, (e, 4, 4, 4)."""
     nodes = points[elements]
     control = np.empty((len(elements), 4, 4, 3))
     for corner in range(4):
@@ -42,16 +58,16 @@ def determinant_bound(points: Floats, elements: Ints) -> Floats:
         control[:, i, j] = control[:, j, i] = 2.0 * nodes[:, mid] - 0.5 * (nodes[:, i] + nodes[:, j])
     slope = 2.0 * (control[:, 1:] - control[:, :1])  # (e, direction, corner weight, xyz)
     crossed = np.cross(slope[:, 1, :, None], slope[:, 2, None, :])
-    products = np.einsum("eja,elma->ejlm", slope[:, 0], crossed) / 8.0
-    symmetric = sum(products.transpose(0, *(1 + np.array(p))) for p in itertools.permutations(range(3))) / 6.0
-    return 8.0 * symmetric.reshape(len(elements), -1).min(axis=1)
+    products = np.einsum("eja,elma->ejlm", slope[:, 0], crossed)
+    turns = [products.transpose(0, *(1 + axis for axis in turn)) for turn in itertools.permutations(range(3))]
+    return np.asarray(sum(turns) / 6.0)
 
 
 def straight_determinant(points: Floats, elements: Ints) -> Floats:
     """Return six times each corner tetrahedron's signed volume, (e,)."""
     corners = points[elements[:, :4]]
     sides = corners[:, 1:] - corners[:, :1]
-    return np.einsum("ea,ea->e", sides[:, 0], np.cross(sides[:, 1], sides[:, 2]))
+    return np.asarray(np.einsum("ea,ea->e", sides[:, 0], np.cross(sides[:, 1], sides[:, 2])))
 
 
 def scaled_jacobian(points: Floats, elements: Ints) -> Floats:

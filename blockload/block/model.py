@@ -17,7 +17,8 @@ class Material:
     """Isotropic, linear elastic; Pa, kg/m³, 1/K. Strengths are those of the casting at its temperature.
 
     `yield_strength` and `tensile_strength` already carry the knock-down for the casting itself (EN 1706) and for
-    temperature, both kept beside them; `sources` gives the source of every value.
+    temperature, both kept beside them (`temperature_factor` is the yield strength's); `sources` gives the source of
+    every value.
     """
 
     name: str
@@ -34,6 +35,7 @@ class Material:
     temperature_factor: float
     cast: bool
     sources: Mapping[str, str]
+    tensile_temperature_factor: float = 1.0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)

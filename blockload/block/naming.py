@@ -1,4 +1,4 @@
-"""Names of face sets: those the solids carry, the interfaces between volumes, and plane faces known by where they lie."""
+"""Names of face sets: those the solids carry, the interfaces between volumes, plane faces known by where they lie."""
 
 from __future__ import annotations
 

@@ -22,6 +22,7 @@ import numpy as np
 from ..arrays import Floats, Ints
 from ..errors import BlockError
 from .curved import determinant_bound, scaled_jacobian, straightened
+from .moments import volumes as contents
 from .naming import face_sets
 from .shape import VeeShape
 
@@ -98,14 +99,14 @@ def _assembled(shape: VeeShape, arrays: dict[str, Any], settings: dict[str, floa
         {name: arrays["volume_of"] == i for i, name in enumerate(arrays["volumes"])},
     )
     quality = scaled_jacobian(points, elements)
-    volumes = mesh_volumes(mesh, arrays["volume_of"], len(arrays["volumes"]))
+    volumes = contents(mesh, arrays["volume_of"], len(arrays["volumes"]))
     report = {
         "made_by": str(arrays["mesher"]),
         "settings": settings,
         "shape": asdict(shape),
         "nodes": int(mesh.doflocs.shape[1]),
         "elements": len(elements),
-        "face_sets": {name: int(len(facets)) for name, facets in sorted(names.items())},
+        "face_sets": {name: len(facets) for name, facets in sorted(names.items())},
         "cad_volume_m3": dict(zip(map(str, arrays["volumes"]), (1e-9 * arrays["cad_volume"]).tolist(), strict=True)),
         "mesh_volume_m3": dict(zip(map(str, arrays["volumes"]), volumes.tolist(), strict=True)),
         "mid_nodes_straightened": moved,
@@ -138,7 +139,7 @@ def facet_numbers(mesh: MeshTet2, corners: Ints) -> Ints:
 
     def key(triples: Ints) -> Ints:
         a, b, c = np.sort(triples, axis=1).T.astype(np.int64)
-        return (a * n + b) * n + c
+        return np.asarray((a * n + b) * n + c)
 
     known = key(mesh.facets.T)
     order = np.argsort(known)
@@ -146,16 +147,9 @@ def facet_numbers(mesh: MeshTet2, corners: Ints) -> Ints:
     found = order[np.minimum(np.searchsorted(known, wanted, sorter=order), len(order) - 1)]
     if np.any(known[found] != wanted):
         raise BlockError("mesh", f"{int(np.sum(known[found] != wanted))} named faces are no face of any element")
-    return found
-
-
-def mesh_volumes(mesh: MeshTet2, volume_of: Ints, count: int) -> Floats:
-    """Return each volume's content by exact quadrature on the curved elements, (count,)."""
-    from skfem import Basis, ElementTetP0
-
-    return np.bincount(volume_of, weights=Basis(mesh, ElementTetP0(), intorder=3).dx.sum(axis=1), minlength=count)
+    return np.asarray(found)
 
 
 def _faces_at(worst: Ints, arrays: dict[str, Any], names: Mapping[str, Ints]) -> list[str]:
-    touching = np.isin(arrays["facet_corners"], worst).any(axis=1)
-    return sorted(name for name, rows in names.items() if touching[rows].any())
+    touching = np.any(np.isin(arrays["facet_corners"], worst), axis=1)
+    return sorted(name for name, rows in names.items() if np.any(touching[rows]))

@@ -142,7 +142,7 @@ class VeeSolids:
         floor = deck + MM * s.cam_floor
         for stations in self._between_cam_walls():
             solid -= self.in_bank(side, (floor, top - wall), (wall - half, half - wall), stations)
-        (ay, az), (cy, cz) = s.bank_axes(side)
+        _, (cy, cz) = s.bank_axes(side)
         height = deck + MM * s.port_height
         for station in s.bores(side):
             for sign, kind in ((-1.0, "intake"), (1.0, "exhaust")):
