@@ -15,6 +15,7 @@ import numpy as np
 from ..arrays import Floats, frozen
 from ..case.model import Case, Manoeuvre
 from .aero import check_devices
+from .aero_split import bounds, only_totals, splits, with_middle_split
 from .bodies import chassis, masses
 from .corners import corner_loads
 from .crank import crank_couples, crank_torque
@@ -36,6 +37,9 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
 
     Raises CaseError for a manoeuvre or a car that has no meaning, BalanceError for a residual above 1e-6.
     """
+    extremes = splits(case) if only_totals(case) else None
+    if extremes is not None:
+        case = with_middle_split(case, extremes)
     check_devices(case)
     inputs = read(case, case.manoeuvres if manoeuvres is None else manoeuvres)
     car, frame = masses(case), chassis(case)
@@ -85,6 +89,9 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
         front_rear_gap=sealed(front_rear_gap(chain)),
         omega_squared=_turning(inputs),
         wheel_lift=frozen(tyres.lifted.any(axis=1), bool),
+        ride_height=frozen(inputs.air.ride_height),
+        outside_map=inputs.air.outside,
+        aero_bounds=None if extremes is None else bounds(extremes, faces),
     )
 
 

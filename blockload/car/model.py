@@ -67,6 +67,21 @@ class Term:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class AeroBounds:
+    """Least and greatest (axis of 2) of every response over all splits of whole-car aero that keep its totals.
+
+    section maps a face to (2, C, 6) in the order of SECTION; stud_axial to (2, C, n); stud_shear to (2, C, n, 2), its
+    components; stud_shear_resultant to (2, C, n). `splits` says in words which carriers share each extreme split.
+    """
+
+    splits: tuple[str, ...]
+    section: Mapping[str, Floats]
+    stud_axial: Mapping[str, Floats]
+    stud_shear: Mapping[str, Floats]
+    stud_shear_resultant: Mapping[str, Floats]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class LoadCases:
     """The balanced load cases of a case file (see the module docstring for the axes).
 
@@ -80,6 +95,9 @@ class LoadCases:
     wheel_lift (C,) tells whether any wheel load of the whole manoeuvre (all parts) is below zero: the ground would
     have to pull, so such a case is not a state of the car.
     links maps each corner that has them to its tensions.
+    ride_height (C, 2), front and rear, is nan where no aero map asks for it; outside_map (C,) says which map was read
+    beyond its grid, and where; aero_bounds is there where only totals of the aero are known, the case itself then
+    standing at the mean of the extreme splits.
     """
 
     names: tuple[str, ...]
@@ -101,6 +119,9 @@ class LoadCases:
     omega_squared: Floats
     wheel_lift: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=bool))
     links: Mapping[str, LinkLoads] = field(default_factory=dict)
+    ride_height: Floats = field(default_factory=lambda: np.zeros((0, 2)))
+    outside_map: tuple[str, ...] = ()
+    aero_bounds: AeroBounds | None = None
 
     @property
     def wheels(self) -> Floats:
