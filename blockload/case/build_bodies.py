@@ -14,6 +14,7 @@ from .notes import Notes
 from .schema import CaseTable
 from .schema_car import BodyTable
 
+ENGINE_CG_HEIGHT = 0.27
 TUB_HEIGHT, TUB_WIDTH = 0.6, 0.67
 ENGINE_SECTION = (0.6, 0.55)
 GEARBOX_SECTION = (0.7, 0.5)
@@ -56,11 +57,8 @@ def _engine(given: BodyTable | None, faces: Mapping[str, Face], notes: Notes) ->
     front, rear = faces["front"], faces["rear"]
     cg = given.cg
     if cg is None:
-        heights = [stud.at[1] for face in (front, rear) for stud in face.studs]
-        cg = frozen([(front.x + rear.x) / 2.0, 0.0, round(float(np.mean(heights)), 4) if heights else 0.3])
-        notes.default(
-            "bodies.engine.cg", text_of(cg, "m"), "geometry: middle of the faces and of their studs; unsourced"
-        )
+        cg = frozen([(front.x + rear.x) / 2.0, 0.0, ENGINE_CG_HEIGHT])
+        notes.default("bodies.engine.cg", text_of(cg, "m"), "halfway between the faces, 0.27 m high; unsourced")
     elif not rear.x <= cg[0] <= front.x:
         found = f"the engine's CG (x = {show(float(cg[0]), 'm')}) is not between the faces"
         notes.problem("bodies.engine.cg", found, f"x from {rear.x:.4g} to {front.x:.4g} m", "check signs and axes")
@@ -106,6 +104,10 @@ def _tub(table: CaseTable, axles: Mapping[str, Axle], engine: Body, gearbox: Bod
         absent = "mass" if given is None or given.mass is None else "cg"
         remedy = "add it, or give [car] mass, front_weight_share and cg_height instead"
         notes.problem(f"bodies.tub.{absent}", f"the tub's {absent} is not given", "[bodies.tub] or [car]", remedy)
+        return None
+    if given is not None and (given.mass is not None or given.cg is not None):
+        found = "only one of the tub's mass and cg is given beside [car]"
+        notes.problem("bodies.tub", found, "both, or neither", "take it out: the tub is then what [car] leaves")
         return None
     others = [(body.mass, body.cg) for body in (engine, gearbox)]
     others += [(2.0 * axle.corner.mass, axle.corner.cg * (1.0, 0.0, 1.0)) for axle in axles.values()]

@@ -13,7 +13,7 @@ from ..arrays import frozen
 from ..errors import CaseError
 from ..units import parse, show
 from .fasteners import proof_load
-from .model import FACES, Face, Stud
+from .model import Face, Stud
 from .notes import Notes, key_of
 from .schema_block import FacesTable, FaceTable, OneStudTable, StudTable
 from .tables import Share, metas
@@ -21,50 +21,61 @@ from .tables import Share, metas
 PRELOAD_SHARES = ("50 %", "62.5 %", "75 %")
 PRELOAD_REASON = "share of the proof load (ISO 898-1); up to 75 % for reused studs (Shigley, eq. 8-31); 50 % unsourced"
 
+SHARED_DEFAULTS = ("preload_scatter", "load_factor", "friction")
+
 
 def build_faces(table: FacesTable, notes: Notes) -> dict[str, Face]:
     """Return both faces in file order of their studs."""
-    faces = {}
-    for name in FACES:
-        given: FaceTable = getattr(table, name)
-        common = given.stud
-        if common is None and name == "rear" and table.front.stud is not None:
-            common = table.front.stud
-            notes.default("faces.rear.stud", "as faces.front.stud", "one stud for both faces")
-        faces[name] = _face(name, given, common, notes)
+    front = _common("front", table.front.stud or StudTable(), notes)
+    rear = _common("rear", _rear_stud(front, table.rear.stud, notes), notes)
+    if front.preload is None:
+        notes.bound("faces.front.stud.preload", PRELOAD_SHARES, PRELOAD_REASON)
+    if rear.preload is None and table.rear.stud is not None and _another(table.rear.stud):
+        notes.bound("faces.rear.stud.preload", PRELOAD_SHARES, PRELOAD_REASON)
+    faces = {"front": _face("front", table.front, front, notes), "rear": _face("rear", table.rear, rear, notes)}
     if faces["front"].x <= faces["rear"].x:
         found = f"the front face (x = {show(faces['front'].x, 'm')}) is not ahead of the rear face"
         notes.problem("faces.rear.x", f"{found} (x = {show(faces['rear'].x, 'm')})", "x points forward", "check signs")
     return faces
 
 
-def _face(name: str, given: FaceTable, common: StudTable | None, notes: Notes) -> Face:
-    prefix = f"faces.{name}"
-    shared = {
-        key: notes.take(common, StudTable, f"{prefix}.stud", key)
-        for key in ("preload_scatter", "load_factor", "friction")
-    }
-    studs = tuple(
-        stud for key, item in given.studs.items() if (stud := _stud(name, key, item, common, shared, notes)) is not None
+def _common(face: str, given: StudTable, notes: Notes) -> StudTable:
+    """Return what a face's studs share, with defaults for what is missing."""
+    return given.model_copy(
+        update={key: notes.take(given, StudTable, f"faces.{face}.stud", key) for key in SHARED_DEFAULTS}
     )
-    if any(item.preload is None for item in given.studs.values()) and (common is None or common.preload is None):
-        notes.bound(f"{prefix}.stud.preload", PRELOAD_SHARES, PRELOAD_REASON)
+
+
+def _rear_stud(front: StudTable, rear: StudTable | None, notes: Notes) -> StudTable:
+    """Return the rear face's stud with the front's values where it says nothing; a preload belongs to its size."""
+    own = {key: value for key in StudTable.model_fields if rear and (value := getattr(rear, key)) is not None}
+    over = {"preload": None, "grip": None, **own} if rear is not None and _another(rear) else own
+    taken = [key for key in StudTable.model_fields if key not in over and getattr(front, key) is not None]
+    if taken:
+        notes.default("faces.rear.stud", f"as the front face's: {', '.join(taken)}", "one stud for both faces")
+    return front.model_copy(update=over)
+
+
+def _another(rear: StudTable) -> bool:
+    return rear.size is not None or rear.property_class is not None
+
+
+def _face(name: str, given: FaceTable, common: StudTable, notes: Notes) -> Face:
+    studs = tuple(
+        stud for key, item in given.studs.items() if (stud := _stud(name, key, item, common, notes)) is not None
+    )
     if given.mirrored:
         studs = _mirrored(name, studs, notes)
     _check_pattern(name, studs, notes)
     return Face(name=name, x=given.x, studs=studs)
 
 
-def _stud(
-    face: str, name: str, item: OneStudTable, common: StudTable | None, shared: Mapping[str, float], notes: Notes
-) -> Stud | None:
+def _stud(face: str, name: str, item: OneStudTable, common: StudTable, notes: Notes) -> Stud | None:
     key = key_of("faces", face, "studs", name)
     values: dict[str, Any] = {}
-    for entry in ("size", "property_class", "preload", *shared):
+    for entry in ("size", "property_class", "preload", *SHARED_DEFAULTS):
         own = getattr(item, entry)
-        values[entry] = own if own is not None else getattr(common, entry, None)
-        if values[entry] is None and entry in shared:
-            values[entry] = shared[entry]
+        values[entry] = own if own is not None else getattr(common, entry)
     for entry in ("size", "property_class"):
         if values[entry] is None:
             example = metas(StudTable)[entry].example

@@ -27,7 +27,12 @@ def estimated_inertia(key: str, inertia: Floats, how: str, notes: Notes) -> Floa
     """Return missing principal moments (3,) [kg·m²], rounded, and note their bound; `how` says what they come from."""
     rounded = frozen([float(f"{item:.4g}") for item in inertia])
     low, middle, high = (text_of(rounded * factor, "kg*m^2") for factor in (0.6, 1.0, 1.6))
-    notes.bound(key, (low, middle, high), f"estimated from {how}, 0.6 and 1.6 times; unsourced")
+    if notes.turning:
+        notes.bound(key, (low, middle, high), f"estimated from {how}, 0.6 and 1.6 times; unsourced")
+    else:
+        notes.default(
+            key, middle, f"estimated from {how}, unsourced; no manoeuvre here turns the car, so it moves nothing"
+        )
     return rounded
 
 

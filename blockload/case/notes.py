@@ -15,9 +15,13 @@ from .tables import Table, metas
 
 @dataclass(slots=True, kw_only=True)
 class Notes:
-    """A notebook for one reading; `where` turns a dotted key into file and key for a message."""
+    """A notebook for one reading; `where` turns a dotted key into file and key for a message.
+
+    `turning` tells whether any manoeuvre lets the car turn as a rigid body, so that inertias count.
+    """
 
     where: Callable[[str], str]
+    turning: bool = True
     defaults: list[Default] = field(default_factory=list)
     bounds: list[Bound] = field(default_factory=list)
     checks: list[Check] = field(default_factory=list)

@@ -19,7 +19,10 @@ CG_HEIGHT = (0.1, 1.2)
 def check_car(
     bodies: Mapping[str, Body], axles: Mapping[str, Axle], faces: Mapping[str, Face], car: CarTable | None, notes: Notes
 ) -> None:
-    """Refuse a car whose sums are beyond the plausible or whose parts stand in an impossible order."""
+    """Refuse a car whose sums are beyond the plausible or whose parts stand in an impossible order.
+
+    `car` is [car] where the tub is given too, so that the two can be compared.
+    """
     front, rear = axles["front"].x, axles["rear"].x
     wheelbase = front - rear
     remedy = "check the sign (x points forward, so the rear axle is at minus the wheelbase) and the unit"
@@ -50,7 +53,7 @@ def check_car(
 
 
 def _compare(car: CarTable, mass: float, share: float, height: float, notes: Notes) -> None:
-    """Compare [car] with the bodies (always equal where the tub is what [car] leaves)."""
+    """Compare [car] with the sum of the bodies."""
     rows = (
         ("mass", car.mass, mass, 0.005 * car.mass, "kg"),
         ("front_weight_share", car.front_weight_share, share, 0.005, ""),

@@ -147,7 +147,8 @@ def _build(document: Document, path: Path, sha256: str, overrides: tuple[str, ..
         table = CaseTable.model_validate(document)
     except ValidationError as error:
         raise together(refusals(error, where), str(path)) from None
-    notes = Notes(where=where)
+    turning = any(item.extra_wheel_force is not None for item in table.manoeuvres.values())
+    notes = Notes(where=where, turning=turning)
     case = _assembled(table, document, path, sha256, overrides, notes)
     if notes.problems or case is None:
         raise together(notes.problems, str(path))
@@ -171,7 +172,8 @@ def _assembled(
     bodies = build_bodies(table, axles, faces, total, notes)
     if not bodies:
         return None
-    check_car(bodies, axles, faces, table.car, notes)
+    stated = table.car if table.bodies.tub is not None and table.bodies.tub.mass is not None else None
+    check_car(bodies, axles, faces, stated, notes)
     devices = build_devices(table, folder, air_density, notes)
     drive = build_drive(table, notes)
     case = Case(
