@@ -224,8 +224,8 @@ def _plan(sketch: Sketch, case: Case, view: View, half: float) -> None:
         ahead = axle.x + axle.loaded_radius + 0.10 if axle.name == "front" else low + 0.07
         ends = [view.at(ahead, y * axle.track / 2) for y in (-1, 1)]
         sketch.add(dimension(ends[0], ends[1], f"track {fixed(axle.track, 3)} m", along=0.25))
-        for tip, side in zip(ends, (-1, 1), strict=True):
-            sketch.add(line(view.at(axle.x, side * axle.track / 2), tip, stroke=GREY, width=0.6, dash="3 3"))
+        for tip, edge in zip(ends, (-1, 1), strict=True):
+            sketch.add(line(view.at(axle.x, edge * axle.track / 2), tip, stroke=GREY, width=0.6, dash="3 3"))
     for body in case.bodies.values():
         _outline(sketch, case, body, view, (0, 1))
     for face in case.faces.values():
@@ -239,8 +239,8 @@ def _plan(sketch: Sketch, case: Case, view: View, half: float) -> None:
     _axes(sketch, view, ("x", "y"))
     _marks(sketch, case, view, (0, 1))
     middle = 0.5 * (case.faces["front"].x + case.faces["rear"].x)
-    for side, words in ((-half + 0.1, "car's right (−y)"), (half - 0.06, "car's left (+y)")):
-        sketch.add(text(view.at(middle, side), words, size=SMALL, anchor="middle", fill=GREY))
+    for y_at, words in ((-half + 0.1, "car's right (−y)"), (half - 0.06, "car's left (+y)")):
+        sketch.add(text(view.at(middle, y_at), words, size=SMALL, anchor="middle", fill=GREY))
 
 
 def _axes(sketch: Sketch, view: View, names: tuple[str, str]) -> None:
