@@ -133,24 +133,49 @@ class AeroTotal:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class Tyres:
+    """Grip: peak friction mu_x, mu_y at the reference load [N]; load_sensitivity [1/N] is its loss per newton more.
+
+    A wheel at load Fz grips by mu [1 - load_sensitivity (Fz - reference_load)].
+    """
+
+    mu_x: float | None = None
+    mu_y: float | None = None
+    load_sensitivity: float = 0.0
+    reference_load: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class Drive:
-    """How the car is driven and braked; crank_direction is the sign of crank rotation about +x."""
+    """How the car is driven and braked; crank_direction is the sign of crank rotation about +x.
+
+    clutch_capacity [N·m] is the torque at which the clutch slips.
+    """
 
     axle: str
     brake_front_share: float
     crank_direction: int
     crank_inertia: float | None
+    clutch_capacity: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Engine:
-    """Engine figures, all optional: m, N·m, rad/s."""
+    """Engine figures, all optional: m, N·m, rad/s, Pa.
+
+    torque_curve (n, 2) lists crank speed [rad/s] and full-load torque [N·m], speeds rising; bmep is the peak brake
+    mean effective pressure; flywheel False marks an engine that revs freely; charged True a turbo or supercharger.
+    """
 
     bore: float | None = None
     stroke: float | None = None
     cylinders: int | None = None
     peak_torque: float | None = None
     max_speed: float | None = None
+    torque_curve: Floats | None = None
+    bmep: float | None = None
+    flywheel: bool = True
+    charged: bool | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -325,7 +350,10 @@ class Check:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Case:
-    """A case file, read, checked and converted. `document` is the merged TOML it was built from."""
+    """A case file, read, checked and converted. `document` is the merged TOML it was built from.
+
+    chassis_torsion [N·m/rad] is the torsional stiffness between the axles, None for a rigid chassis.
+    """
 
     path: Path
     title: str
@@ -354,6 +382,8 @@ class Case:
     checks: tuple[Check, ...]
     aero_split: tuple[Device, ...] = ()
     concept_grade: str | None = None
+    tyres: Tyres = field(default_factory=Tyres)
+    chassis_torsion: float | None = None
 
     @property
     def wheelbase(self) -> float:

@@ -10,7 +10,7 @@ from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import cache
 from types import UnionType
-from typing import Annotated, Any, Union, get_args, get_origin
+from typing import Annotated, Any, Literal, Union, get_args, get_origin
 
 from pydantic import BaseModel, ConfigDict, Field, GetPydanticSchema, ValidationInfo, field_validator
 from pydantic_core import core_schema
@@ -159,6 +159,14 @@ def inner(annotation: Any) -> tuple[type[Table] | None, bool]:
     if isinstance(annotation, type) and issubclass(annotation, Table):
         return annotation, False
     return None, False
+
+
+def words_of(annotation: Any) -> tuple[str, ...]:
+    """Return the words a field chooses from; none where it takes anything else."""
+    if get_origin(annotation) is Literal:
+        return tuple(str(item) for item in get_args(annotation))
+    found = [word for item in get_args(annotation) for word in words_of(item)]
+    return tuple(found)
 
 
 def fields(table_class: type[Table]) -> Iterator[tuple[str, Any, Meta]]:
