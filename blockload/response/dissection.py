@@ -7,34 +7,43 @@ eliminated after both. George, Nested Dissection of a Regular Finite Element Mes
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
 
 from ..arrays import Floats, Ints
 
-LEAF = 48
+LEAF = 64
 _TURNS = np.array([[1, 0, 0], [0, 1, 0], [0, 0, 1]], dtype=float)
 
 
-def dissect(graph: Any, points: Floats, leaf: int = LEAF) -> list[tuple[Ints, int]]:
-    """Parts of a node graph (N, N) in elimination order: (nodes, index of the parent part or -1)."""
-    parts: list[tuple[Ints, int]] = []
+@dataclass(frozen=True, slots=True, eq=False)
+class Part:
+    """Nodes eliminated together, and the index of the part that separates them from the rest (-1 for the last)."""
+
+    nodes: Ints
+    parent: int
+
+
+def dissect(graph: Any, points: Floats, leaf: int = LEAF) -> list[Part]:
+    """Parts of a node graph (N, N) in elimination order."""
+    parts: list[Part] = []
     stack: list[tuple[Any, Ints, int]] = [(graph.tocsr(), np.arange(len(points)), -1)]
     while stack:
         links, nodes, parent = stack.pop()
         if len(nodes) <= leaf:
-            parts.append((nodes, parent))
+            parts.append(Part(nodes, parent))
             continue
         side = _best_cut(links, points[nodes])
-        parts.append((nodes[side == 2], parent))
+        parts.append(Part(nodes[side == 2], parent))
         here = len(parts) - 1
         for half in (0, 1):
             chosen = np.flatnonzero(side == half)
             if len(chosen):
                 stack.append((links[chosen][:, chosen], nodes[chosen], here))
     last = len(parts) - 1
-    return [(nodes, last - parent if parent >= 0 else -1) for nodes, parent in reversed(parts)]
+    return [Part(part.nodes, last - part.parent if part.parent >= 0 else -1) for part in reversed(parts)]
 
 
 def _best_cut(links: Any, points: Floats) -> Ints:

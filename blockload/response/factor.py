@@ -1,9 +1,10 @@
 """Direct solvers behind one signature: factorise(matrix, ...) gives solve(columns).
 
-The matrix is symmetric positive definite and sparse. "scipy" is always there; "ngsolve" brings a parallel sparse
-Cholesky; "pypardiso" (proprietary, free of charge, the extra `fast`) is the quickest. "auto" takes the first of
-pypardiso, ngsolve, scipy that imports; the one taken is part of the result. None of them may change a result: every
-block of columns is checked by its residual.
+The matrix is symmetric positive definite and sparse. "fronts" is the Cholesky of this room on scipy's LAPACK and is
+always there, as is "scipy", its general sparse LU in the same order; "ngsolve" brings an independent sparse Cholesky;
+"pypardiso" (proprietary, free of charge, the extra `fast`) is the quickest. "auto" takes the first of pypardiso and
+fronts that imports; the one taken is part of the result. None of them may change a result: every block of columns is
+checked by its residual.
 """
 
 from __future__ import annotations
@@ -19,24 +20,30 @@ from ..errors import SolveError
 from .dissection import dissect
 
 Solve = Callable[[Floats], Floats]
-SOLVERS = ("pypardiso", "ngsolve", "scipy")
+SOLVERS = ("pypardiso", "fronts", "ngsolve", "scipy")
+OURS = ("fronts", "scipy")
 RESIDUAL_LIMIT = 1e-8
 
 
 def choose(solver: str) -> str:
     """Name of the solver that will be used: the first one installed for "auto"."""
     if solver == "auto":
-        return next(name for name in SOLVERS if find_spec(name) is not None)
+        return next(name for name in SOLVERS if installed(name))
     if solver not in SOLVERS:
         raise SolveError("solver", f"{solver!r}", f"auto, {', '.join(SOLVERS)}")
-    if find_spec(solver) is None:
-        raise SolveError("solver", f"{solver} is not installed", "", f"install {solver}, or choose scipy")
+    if not installed(solver):
+        raise SolveError("solver", f"{solver} is not installed", "", f"install {solver}, or choose fronts")
     return solver
+
+
+def installed(solver: str) -> bool:
+    """Whether a solver can be used here."""
+    return solver in OURS or find_spec(solver) is not None
 
 
 def factorise(matrix: Any, solver: str, points: Floats) -> Solve:
     """Factor a symmetric positive definite CSR matrix whose unknown 3·node + component belongs to points (N, 3)."""
-    makers = {"scipy": _scipy, "ngsolve": _ngsolve, "pypardiso": _pypardiso}
+    makers = {"fronts": _fronts, "scipy": _scipy, "ngsolve": _ngsolve, "pypardiso": _pypardiso}
     solve = makers[choose(solver)](matrix, points)
 
     def checked(columns: Floats) -> Floats:
@@ -70,11 +77,17 @@ def node_graph(matrix: Any) -> Any:
     return graph
 
 
+def _fronts(matrix: Any, points: Floats) -> Solve:
+    from .cholesky import factor
+
+    return factor(matrix, dissect(node_graph(matrix), points)).solve
+
+
 def _scipy(matrix: Any, points: Floats) -> Solve:
     from scipy.sparse.linalg import splu
 
     parts = dissect(node_graph(matrix), points)
-    nodes = np.concatenate([part for part, _ in parts])
+    nodes = np.concatenate([part.nodes for part in parts])
     order = (3 * nodes[:, None] + np.arange(3)).ravel()
     permuted = matrix[order][:, order].tocsc()
     options = {"SymmetricMode": True}
@@ -89,7 +102,7 @@ def _scipy(matrix: Any, points: Floats) -> Solve:
 
 
 def _ngsolve(matrix: Any, points: Floats) -> Solve:
-    from ngsolve import BitArray, MultiVector, TaskManager  # noqa: F401
+    from ngsolve import TaskManager
     from ngsolve.la import SparseMatrixd
     from scipy import sparse
 

@@ -40,9 +40,9 @@ def respond(
 ) -> Library:
     """Return the response library of a block, from the cache where it is there already.
 
-    `solver` is "auto", "scipy", "ngsolve" or "pypardiso", and the one used is `Library.solver`; `cache` is the folder
-    of the cache, by default BLOCKLOAD_CACHE or the user's cache folder; `progress` is called with a stage and the
-    share done, 0 to 1.
+    `solver` is "auto", "fronts", "scipy", "ngsolve" or "pypardiso", and the one used is `Library.solver`; `cache` is
+    the folder of the cache, by default BLOCKLOAD_CACHE or the user's cache folder; `progress` is called with a stage
+    and the share done, 0 to 1.
     """
     report = progress or (lambda stage, share: None)
     chosen = choose(solver)
@@ -97,7 +97,7 @@ def unit_loads(block: Block, elements: Elements) -> UnitLoads:
 
 
 def solve(
-    block: Block, *, solver: str = "scipy", report: Progress = lambda stage, share: None, held: Ints | None = None
+    block: Block, *, solver: str = "fronts", report: Progress = lambda stage, share: None, held: Ints | None = None
 ) -> Library:
     """Solve all unit loads, nothing read or written. `held` overrides the six auxiliary constraints."""
     elements = elements_of(block)
