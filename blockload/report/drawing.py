@@ -227,6 +227,7 @@ def patterns(key: str) -> str:
     made = []
     for name, (fill, stroke, kind) in BODY_COLOURS.items():
         made.append(_pattern(f"{key}-{name}", fill, stroke, kind))
+    made.append(_pattern(f"{key}-below", "#f8efe2", "#d9b483", "hatch"))
     made.append(_pattern(f"{key}-pulled", *PULLED, "hatch"))
     made.append(_pattern(f"{key}-pressed", PRESSED[0], PRESSED[0], "plain"))
     return "".join(made)

@@ -2,40 +2,22 @@
 
 from __future__ import annotations
 
-import shutil
-from collections.abc import Mapping
+import hashlib
+import tomllib
+from collections.abc import Iterator, Mapping
 from pathlib import Path
-from typing import TYPE_CHECKING, Any, Protocol
+from typing import Any
 
-from .files import fill_beside, probe_folder, write_text
+from ..case.model import Case
+from .choice import governing_index
+from .files import probe_folder, refusal, write_beside, write_text
+from .page import page
+from .pictures import MISSING, Pictures, draw
 from .results import results, write_json
+from .run import RunLike
+from .surface import Surface, surface, write_fields
 
-if TYPE_CHECKING:
-    from ..block.model import Block
-    from ..car.model import LoadCases
-    from ..case.model import Case
-    from ..installation.model import PadLoads
-    from ..margins.model import Margins
-    from ..response.model import Library
-
-
-class RunLike(Protocol):
-    """Everything one check produced; block, library and pads are None at level `faces`."""
-
-    @property
-    def run_id(self) -> str: ...
-    @property
-    def case(self) -> Case: ...
-    @property
-    def cases(self) -> LoadCases: ...
-    @property
-    def block(self) -> Block | None: ...
-    @property
-    def library(self) -> Library | None: ...
-    @property
-    def pads(self) -> PadLoads | None: ...
-    @property
-    def margins(self) -> Margins: ...
+SWITCHED_OFF = f"{MISSING}: they were switched off for this run."
 
 
 def probe_output(folder: Path) -> None:
@@ -46,8 +28,8 @@ def probe_output(folder: Path) -> None:
 def write_run(folder: Path, run: RunLike, *, pictures: bool = True) -> None:
     """Write inputs/, fields.vtu, report.html and, last, results.json into `folder`.
 
-    Each file is written beside and renamed; no other name in the folder is touched. An old results.json is taken
-    away first, so that a run cut short never leaves old numbers beside new files.
+    Each file is written beside and renamed; no other name in the folder is touched. The results of an older run are
+    taken away first, so that a run cut short never leaves old numbers beside new files.
 
     Raises
     ------
@@ -56,19 +38,75 @@ def write_run(folder: Path, run: RunLike, *, pictures: bool = True) -> None:
 
     """
     probe_folder(folder)
+    _clear(folder)
+    hashes = _write_inputs(folder / "inputs", run.case)
+    stills = _block(folder, run, pictures=pictures)
+    write_text(folder / "report.html", page(run, stills))
     data = results(run.case, run.cases, run.block, run.library, run.pads, run.margins, run_id=run.run_id)
-    (folder / "results.json").unlink(missing_ok=True)
-    _write_inputs(folder / "inputs", run.case, data)
+    data["inputs"]["files"] = hashes
     write_json(folder / "results.json", data)
 
 
-def _write_inputs(folder: Path, case: Case, data: Mapping[str, Any]) -> None:
-    if case.path.is_file():
-        fill_beside(folder / case.path.name, lambda temporary: _copied(case.path, temporary))
+def _clear(folder: Path) -> None:
+    """Take away what an older run wrote under our names."""
+    for name in ("results.json", "report.html", "fields.vtu"):
+        try:
+            (folder / name).unlink(missing_ok=True)
+        except OSError as error:
+            raise refusal(folder / name, error) from error
 
 
-def _copied(source: Path, target: Path) -> None:
-    shutil.copyfile(source, target)
+def _block(folder: Path, run: RunLike, *, pictures: bool) -> Pictures | None:
+    """Write the surface fields and draw the block, where there is one."""
+    seen = _surface(run)
+    if seen is None:
+        return None
+    write_fields(folder / "fields.vtu", seen, run_id=run.run_id)
+    return draw(seen, run.margins) if pictures else Pictures(missing=SWITCHED_OFF)
+
+
+def _surface(run: RunLike) -> Surface | None:
+    if run.library is None or run.pads is None or run.margins.surface is None:
+        return None
+    index = governing_index(run.cases, run.margins)
+    return surface(run.cases, run.library, run.pads, run.margins.surface, index)
+
+
+def _write_inputs(folder: Path, case: Case) -> dict[str, str]:
+    """Copy the case file and what it names; return file names with their hashes. The mesh is kept by hash alone."""
+    hashes: dict[str, str] = {}
+    for source in dict.fromkeys(_sources(case)):
+        try:
+            content = source.read_bytes()
+        except OSError:
+            continue  # read while the case was read; gone since, and its hash stands in the results
+        name = source.name
+        while name in hashes:
+            name = f"other-{name}"
+        write_beside(folder / name, content)
+        hashes[name] = hashlib.sha256(content).hexdigest()
+    return hashes
+
+
+def _sources(case: Case) -> Iterator[Path]:
+    """Yield the case file, the files it extends, its list of points and its aero maps."""
+    path: Path | None = case.path
+    while path is not None:
+        yield path
+        path = _extended(path)
+    points = case.document.get("frame", {}).get("points")
+    if isinstance(points, str):
+        yield case.path.parent / points
+    yield from (device.map for device in case.devices if device.map is not None)
+
+
+def _extended(path: Path) -> Path | None:
+    try:
+        document: Mapping[str, Any] = tomllib.loads(path.read_text(encoding="utf-8-sig"))
+    except (OSError, ValueError):
+        return None
+    base = document.get("extends")
+    return path.parent / base if isinstance(base, str) else None
 
 
 __all__ = ["probe_output", "write_run", "write_text"]
