@@ -16,6 +16,7 @@ from ..arrays import Floats, frozen
 from ..case.model import Case, Manoeuvre
 from .aero import check_devices
 from .aero_split import bounds, only_totals, splits, with_middle_split
+from .aero_totals import refuse_wrong_total
 from .bodies import chassis, masses
 from .corners import corner_loads
 from .crank import crank_couples, crank_torque
@@ -32,8 +33,13 @@ from .wheels import tyre_answer
 from .wrench import sealed
 
 
-def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCases:
+def balance(
+    case: Case, manoeuvres: Sequence[Manoeuvre] | None = None, *, block_torsion: float | None = None
+) -> LoadCases:
     """Balanced load cases of a car: its own manoeuvres, or those given.
+
+    `block_torsion` [N·m/rad] is the block's own torsional stiffness, in series with the chassis's between the axles;
+    None: the block is rigid, or is contained in the chassis's figure.
 
     Raises CaseError for a manoeuvre or a car that has no meaning, BalanceError for a residual above 1e-6.
     """
@@ -41,6 +47,7 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
     if extremes is not None:
         case = with_middle_split(case, extremes)
     check_devices(case)
+    refuse_wrong_total(case)
     inputs = read(case, case.manoeuvres if manoeuvres is None else manoeuvres)
     car, frame = masses(case), chassis(case)
     inputs = in_the_air(case, inputs, car)
@@ -50,7 +57,7 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
     if not all(kept.all() for kept in inputs.keep.values()):
         whole = elementary(case, inputs.whole(), names, car, frame)
 
-    tyres = tyre_answer(case, inputs, loads, whole)
+    tyres = tyre_answer(case, inputs, loads, whole, block_torsion)
     torque = crank_torque(case, inputs, frame, tyres.along)
     couple = crank_couples(case, inputs, names, torque)
     corners = corner_loads(case, inputs, frame, loads.loads[:, :, 3:], tyres.force)
@@ -88,7 +95,8 @@ def balance(case: Case, manoeuvres: Sequence[Manoeuvre] | None = None) -> LoadCa
         residual=sealed(residual.max(axis=1)),
         front_rear_gap=sealed(front_rear_gap(chain)),
         omega_squared=_turning(inputs),
-        wheel_lift=frozen(tyres.lifted.any(axis=1), bool),
+        wheel_lift=frozen(tyres.pulled.any(axis=1), bool),
+        lifted=frozen(tyres.lifted, bool),
         ride_height=frozen(inputs.air.ride_height),
         outside_map=inputs.air.outside,
         aero_bounds=None if extremes is None else bounds(extremes, faces),
