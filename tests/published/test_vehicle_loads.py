@@ -151,7 +151,7 @@ def test_drive_torque_at_the_ground(published: Published) -> None:
 
 
 def stressed_engine() -> LoadCases:
-    """540, 150, 110 kg at 1.35, 2.14, 3.0 m behind the front axle, 9 and 6 kN down at 0.9 and 3.9 m, cut at 1.90, 2.38."""
+    """540, 150, 110 kg at 1.35, 2.14, 3.0 m behind the front axle, 9 and 6 kN down at 0.9 and 3.9 m."""
     none = body("corner", 0.0, (0.0, 0.7, 0.3), (0, 0, 0))
     case = car(
         gravity=9.81,
