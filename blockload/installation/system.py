@@ -130,10 +130,12 @@ def refuse_mechanism(connections: Connections, modes: Floats) -> None:
     seen = seen @ to_centre * np.tile([1.0, 1.0, 1.0, *[1.0 / length] * 3], 2)
     _, sizes, motions = np.linalg.svd(seen, full_matrices=True)
     sizes = np.pad(sizes, (0, 12 - sizes.size))
-    if sizes[0] == 0.0 or sizes[-1] <= MECHANISM * sizes[0]:
+    free = int((sizes <= MECHANISM * sizes[0]).sum())
+    if free:
+        more = f" (and {free - 1} more motions)" if free > 1 else ""
         raise SolveError(
             "installation",
-            f"nothing holds {_named(motions[-1], centre, length)}",
+            f"nothing holds {_named(motions[-1], centre, length)}{more}",
             "pads and paths that hold block and gearbox in all six directions",
             "at least three studs not in one line on each face, or a second load path that holds this motion",
         )
@@ -165,7 +167,7 @@ def _named(motion: Floats, centre: Floats, length: float) -> str:
         moving, turning = six[:3], six[3:]
         if np.linalg.norm(six) < 0.05 * np.linalg.norm(motion):
             continue
-        rotates = np.linalg.norm(turning) >= np.linalg.norm(moving)
+        rotates = np.linalg.norm(turning) > 1e-3 * np.linalg.norm(moving)
         axis = turning if rotates else moving
         axis = axis / np.linalg.norm(axis)
         text = f"{'rotation of' if rotates else 'movement of'} {body} {'about' if rotates else 'along'} {_text(axis)}"

@@ -13,7 +13,7 @@ from collections.abc import Sequence
 
 from ..block.model import Block, Material
 from ..car.model import LoadCases
-from ..case.model import Case, Check
+from ..case.model import Case, Check, MaterialChoice
 from ..installation.model import PadLoads
 from ..response.model import Library
 from .faces import face_margins
@@ -45,7 +45,7 @@ def judge(
     block, library, pads : Block, Library, PadLoads, optional
         The installed block; None without a block (level `faces`).
     grade : Material, optional
-        At level `faces`, what the block would be cast in, for the requirements sheet.
+        At level `faces`, what the block would be cast in, for the requirements sheet; by default that of [concept].
 
     """
     checks = tuple(load_checks(cases))
@@ -56,8 +56,18 @@ def judge(
         margins=margins,
         checks=checks,
         verdict=verdict(case, cases, margins, checks, level="faces"),
-        requirements=requirements(case, cases, grade),
+        requirements=requirements(case, cases, grade or concept_grade(case)),
     )
+
+
+def concept_grade(case: Case) -> Material | None:
+    """Return the grade the case chose in [concept] before there is a block, if any."""
+    grade = case.document.get("concept", {}).get("grade")
+    if grade is None:
+        return None
+    from ..block.materials import material
+
+    return material(MaterialChoice(volume="concept", grade=grade, properties=None, temperature=None))
 
 
 def _solid(
