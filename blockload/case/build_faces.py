@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Mapping
 from dataclasses import replace
 from typing import Any
@@ -108,12 +107,19 @@ def _preload(values: Mapping[str, Any], key: str, notes: Notes) -> float:
 
 
 def side_of(name: str) -> int:
-    """Return +1 for a name that says left, -1 for right, 0 for neither: TL, bottom_left, ML."""
-    match = re.fullmatch(r"(?:[A-Z]{0,2}\d*|.*[a-z0-9_. -])([LR])|.*[_. -]([lr])|(?i:.*(left|right))", name)
-    if match is None:
-        return 0
-    word = next(item for item in match.groups() if item)
-    return 1 if word[0] in "Ll" else -1
+    """Return +1 for a name that says left, -1 for right, 0 for neither: TL, bottom_left, stud_r, ML."""
+    word = name.lower()
+    code, before = name[-1:], name[-2:-1]
+    if word.endswith(("left", "right")):
+        return 1 if word.endswith("left") else -1
+    if word[-1:] in ("l", "r") and (before in ("_", ".", " ", "-") or (code in "LR" and _short(name[:-1]))):
+        return 1 if code in "Ll" else -1
+    return 0
+
+
+def _short(stem: str) -> bool:
+    """Whether a capital L or R after this is a side, as in TL, B2L and topR, and not the end of a word, as in REAR."""
+    return not stem or not stem[-1].isupper() or (len(stem) <= 2 and stem.isupper())
 
 
 def _mirrored(face: str, studs: tuple[Stud, ...], notes: Notes) -> tuple[Stud, ...]:

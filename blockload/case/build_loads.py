@@ -4,15 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from pathlib import Path
+from typing import Any
 
 import numpy as np
 
-from ..arrays import frozen
-from ..units import show
-from .model import AeroMap, AeroTotal, Axle, Check, Device, Drive, Manoeuvre
+from ..arrays import Floats, frozen
+from ..errors import CaseError
+from ..units import parse, show
+from .model import AeroMap, AeroTotal, Axle, Check, Device, Drive, Engine, Manoeuvre
 from .notes import Notes, key_of
 from .schema import CaseTable
-from .schema_car import DriveTable
+from .schema_car import DriveTable, EngineTable
 from .schema_loads import DeviceTable, ManoeuvreTable
 
 FORCE_TOLERANCE = 0.005
@@ -151,6 +153,43 @@ def build_drive(table: CaseTable, notes: Notes) -> Drive:
         crank_direction=direction,
         crank_inertia=given.crank_inertia if given is not None else None,
     )
+
+
+def build_engine(given: EngineTable | None, notes: Notes) -> Engine:
+    """Return the engine's figures."""
+    if given is None:
+        return Engine()
+    return Engine(
+        bore=given.bore,
+        stroke=given.stroke,
+        cylinders=given.cylinders,
+        peak_torque=given.peak_torque,
+        max_speed=given.max_speed,
+        torque_curve=_torque_curve(given.torque_curve, notes),
+        bmep=given.bmep,
+        flywheel=given.flywheel is not False,
+        charged=given.charged,
+    )
+
+
+def _torque_curve(given: Any, notes: Notes) -> Floats | None:
+    """Return pairs of speed and torque (n, 2), speeds rising; a file's name is kept for later use."""
+    if given is None or isinstance(given, str):
+        return None
+    key = "engine.torque_curve"
+    where = notes.where(key)
+    if not isinstance(given, list) or not all(isinstance(pair, list) and len(pair) == 2 for pair in given):
+        notes.problem(key, f"{str(given)[:60]!r} is no torque curve", 'pairs such as ["3000 rpm", "350 Nm"]')
+        return None
+    try:
+        curve = np.array([[parse(s, "angular_speed", where), parse(t, "moment", where)] for s, t in given], dtype=float)
+    except CaseError as error:
+        notes.problems.append(error)
+        return None
+    if len(curve) < 2 or np.any(np.diff(curve[:, 0]) <= 0.0):
+        notes.problem(key, "the speeds do not rise from pair to pair", "two or more pairs, speeds rising")
+        return None
+    return frozen(curve)
 
 
 def build_manoeuvres(table: CaseTable, drive: Drive, notes: Notes) -> tuple[Manoeuvre, ...]:

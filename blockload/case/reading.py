@@ -15,11 +15,11 @@ from .build_axles import build_axles
 from .build_block import build_block, build_installation, build_known, build_limits, build_paths
 from .build_bodies import build_bodies, total_mass
 from .build_faces import build_faces
-from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_manoeuvres
+from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_engine, build_manoeuvres
 from .documents import Document, Layer, layers, literal, merged, nested, override, split_key
 from .frame import Frame, read_frame, to_car
 from .messages import refusals, together
-from .model import Case, Engine
+from .model import Case
 from .notes import Notes
 from .plausible import check_car
 from .schema import CaseTable
@@ -190,7 +190,7 @@ def _assembled(
         aero_total=build_aero_total(table, devices, axles, air_density, notes),
         aero_split=build_aero_split(table),
         drive=drive,
-        engine=_engine(table.engine),
+        engine=build_engine(table.engine, notes),
         tyre_friction=_friction(table),
         faces=faces,
         manoeuvres=build_manoeuvres(table, drive, notes),
@@ -210,11 +210,6 @@ def _assembled(
 
 def _noted(case: Case, notes: Notes) -> Case:
     return replace(case, bounds=tuple(notes.bounds), defaults=tuple(notes.defaults), checks=tuple(notes.checks))
-
-
-def _engine(given: EngineTable | None) -> Engine:
-    names = ("bore", "stroke", "cylinders", "peak_torque", "max_speed")
-    return Engine(**{name: getattr(given, name, None) for name in names})
 
 
 def _friction(table: CaseTable) -> float | None:

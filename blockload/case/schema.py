@@ -3,8 +3,6 @@
 Tables whose use comes later are kept as they stand in the file; they are read by the room that uses them.
 """
 
-from __future__ import annotations
-
 from typing import Any, Literal
 
 from .schema_block import BlockTable, ConceptTable, FacesTable, InstallationTable, KnownTable, LimitsTable, PathTable

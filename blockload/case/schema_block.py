@@ -1,7 +1,5 @@
 """The case file's tables for faces and studs, the block, how it is held, and what is asked of it."""
 
-from __future__ import annotations
-
 from typing import Any, Literal
 
 from .schema_car import Carrier

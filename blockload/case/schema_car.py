@@ -1,7 +1,5 @@
 """The case file's tables for the car itself: frame, bodies, axles, tyres, drive and engine."""
 
-from __future__ import annotations
-
 from typing import Any, Literal
 
 from .tables import Table, Vector, quantity, table, words
@@ -313,7 +311,17 @@ class EngineTable(Table):
     rod_mass: float | None = quantity("mass", "per connecting rod (kept for later use)", example='"0.48 kg"')
     rod_length: float | None = quantity("length", "centre distance (kept for later use)", example='"150 mm"')
     peak_torque: float | None = quantity("moment", "peak crank torque", example='"450 Nm"', band=("10 Nm", "3000 Nm"))
-    torque_curve: Any = words("file, or pairs of speed and torque (kept for later use)")
+    torque_curve: Any = words(
+        'full load: pairs of speed and torque, [["3000 rpm", "350 Nm"], ...], or a CSV file (kept for later use)',
+        example='[["3000 rpm", "350 Nm"], ["6000 rpm", "430 Nm"]]',
+    )
+    bmep: float | None = quantity(
+        "pressure", "peak brake mean effective pressure", example='"13 bar"', band=("1 bar", "60 bar")
+    )
+    flywheel: bool | None = words(
+        "false for an engine that revs freely", default="true", source="a flywheel and clutch", example="true"
+    )
+    charged: bool | None = words("true for a turbocharger or supercharger", example="false")
     max_speed: float | None = quantity(
         "angular_speed", "highest crank speed", example='"9000 rpm"', band=("500 rpm", "25000 rpm")
     )

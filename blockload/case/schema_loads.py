@@ -1,7 +1,5 @@
 """The case file's tables for what acts on the car: aero devices and manoeuvres."""
 
-from __future__ import annotations
-
 from typing import Literal
 
 from .schema_car import Carrier
