@@ -145,8 +145,10 @@ KINDS: Mapping[str, Kind] = MappingProxyType(_kinds())
 _NUMBER = r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?"
 _ONE = re.compile(rf"\s*({_NUMBER})\s*(.*?)\s*", re.DOTALL)
 _MANY = re.compile(rf"\s*\(\s*({_NUMBER}(?:\s*,\s*{_NUMBER})*)\s*\)\s*(.*?)\s*", re.DOTALL)
-_UNIT_TEXT = re.compile(r"[A-Za-zµμ°%1][A-Za-zµμ°%*/^()0-9-]*")
-_STRAY_DIGIT = re.compile(r"(?<![\^0-9(-])(?<!\^-)[0-9](?!/)")
+_TERM_TEXT = r"\s*([+-]?)\s*(\d+\.?\d*|\.\d+)\s*([^\d\s+-]+)\s*"
+_TERM, _SUM = re.compile(_TERM_TEXT), re.compile(f"(?:{_TERM_TEXT})+")
+_ATOM = r"[A-Za-z%]+(?:\^-?\d)?"
+_UNIT_TEXT = re.compile(rf"(?:1/)?\(?{_ATOM}\)?(?:[*/]\(?{_ATOM}\)?)*")
 _SPELLINGS = str.maketrans({"·": "*", "⋅": "*", "×": "*", "²": "^2", "³": "^3", "μ": "u", "µ": "u"})
 
 
@@ -217,7 +219,7 @@ def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
         raise CaseError(where, f"{value!r} uses g", _form(kind), remedy)
     unit = UNITS.get(name)
     if unit is None:
-        if (re.search(r"[\d,;.+()]", text) and not _UNIT_TEXT.fullmatch(name)) or _STRAY_DIGIT.search(name):
+        if not _UNIT_TEXT.fullmatch(name) and re.search(r"[\d,;.+()]", name):
             _refuse(value, kind, where)
         unit = _rare_unit(name)
     if not name and kind.dimension != _NONE:
@@ -282,10 +284,10 @@ def _diagnosis(value: str, kind: Kind) -> tuple[str, str]:
         sign, whole, part, rest = comma.groups()
         point = f"'{sign}{whole}.{part}{rest}'"
         return "has a decimal comma", f"{point} or '{sign}{whole}{part}{rest}'" if len(part) == 3 else point
-    terms = re.findall(rf"({_NUMBER})\s*([^\d+\s-][^+\s-]*)", text)
-    if len(terms) > 1 and len({unit for _, unit in terms}) == 1:
-        total = sum(float(number) for number, _ in terms)
-        return "is a sum", f"its result, '{total:.12g} {terms[0][1]}'"
+    terms = _TERM.findall(text)
+    if len(terms) > 1 and _SUM.fullmatch(text) and len({unit for _, _, unit in terms}) == 1:
+        total = sum(-float(number) if sign == "-" else float(number) for sign, number, _ in terms)
+        return "is a sum", f"its result, '{total:.12g} {terms[0][2]}'"
     if re.search(r"[+*/-]\s*\d", text.lstrip("+-")):
         return "is a calculation", "its result as one number and a unit"
     return "is not one number and a unit", ""
