@@ -92,8 +92,9 @@ class LoadCases:
     residual (C,) is the largest of any body, as a share of the magnitudes on it, reassembled from `terms`;
     front_rear_gap (C,) is the disagreement of the face wrenches summed from the front and from the rear, as a share.
     omega_squared (C,) is that of the steady turn's yaw rate [rad^2/s^2]: it sizes the neglected omega x (omega x r).
-    wheel_lift (C,) tells whether any wheel load of the whole manoeuvre (all parts) is below zero: the ground would
-    have to pull, so such a case is not a state of the car.
+    lifted (C, 4) tells which wheel is off the ground while the other three carry the car; wheel_lift (C,) whether three
+    would not do either, so that some wheel load of the whole manoeuvre (all parts) is below zero: the ground would have
+    to pull, and such a case is not a state of the car.
     links maps each corner that has them to its tensions.
     ride_height (C, 2), front and rear, is nan where no aero map asks for it; outside_map (C,) says which map was read
     beyond its grid, and where; aero_bounds is there where only totals of the aero are known, the case itself then
@@ -118,6 +119,7 @@ class LoadCases:
     front_rear_gap: Floats
     omega_squared: Floats
     wheel_lift: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=bool))
+    lifted: NDArray[np.bool_] = field(default_factory=lambda: np.zeros((0, 4), dtype=bool))
     links: Mapping[str, LinkLoads] = field(default_factory=dict)
     ride_height: Floats = field(default_factory=lambda: np.zeros((0, 2)))
     outside_map: tuple[str, ...] = ()

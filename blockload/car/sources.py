@@ -12,6 +12,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from ..arrays import Floats
 from ..case.model import CARRIERS, CORNERS, Case
@@ -31,7 +32,8 @@ class Elementary:
 
     loads (C, S, B, 6) about the origin; motion (C, S, 6): acceleration of the car's CG and angular acceleration that
     belong to the source; engine_motion (C, S, 6): a - g and alpha of the engine as far as the source contains it;
-    contact (C, S, 4, 3): extra wheel forces; unsprung (C, S, 2): lateral d'Alembert force on each axle's corners.
+    contact (C, S, 4, 3): extra wheel forces; unsprung (C, S, 2): lateral d'Alembert force on each axle's corners;
+    moving (S,): sources that move the rigid car instead of being answered by the wheels.
     """
 
     loads: Floats
@@ -39,6 +41,13 @@ class Elementary:
     engine_motion: Floats
     contact: Floats
     unsprung: Floats
+    moving: NDArray[np.bool_]
+
+    @property
+    def answered(self) -> Floats:
+        """Loads (C, S, B, 6) that the wheels answer: those of extra forces move the rigid car instead."""
+        result: Floats = self.loads * ~self.moving[:, None, None]
+        return result
 
 
 def source_names(case: Case, inputs: Inputs) -> tuple[str, ...]:
@@ -58,6 +67,7 @@ def elementary(case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses, 
         engine_motion=np.zeros((cases, count, 6)),
         contact=np.zeros((cases, count, 4, 3)),
         unsprung=np.zeros((cases, count, 2)),
+        moving=np.array([name.startswith("extra.") for name in names]),
     )
     _add_devices(result, case, inputs, car)
     _add_bodies(result, case, inputs, names, car)

@@ -7,7 +7,7 @@ from dataclasses import replace
 from typing import Any
 
 import numpy as np
-from worked_car import CAR, FRONT, REAR
+from car.worked_car import CAR, FRONT, REAR
 
 from blockload.car.links import LINKS
 from blockload.case.model import Axle, Case, Link, Rocker
