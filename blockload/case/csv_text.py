@@ -12,12 +12,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
 
+import numpy as np
+
 from ..arrays import Floats, frozen
 from ..errors import CaseError
 
 _HEAD = re.compile(r"([A-Za-z_]\w*)(?:\s*[\[(]\s*(.*?)\s*[\])])?")
 _NUMBER = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
-_STATEMENT = re.compile(r"#+\s*([A-Za-z_][\w ]*?)\s*[=:]\s*(.*)")
+_STATEMENT = re.compile(r"#+\s*([A-Za-z_][\w ]*?)\s*=\s*(.*)")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -45,13 +47,18 @@ class Sheet:
                 raise CaseError(f"{self.path}, line {line}", f"{self.heads[column].name!r} is empty", "a word")
         return tuple(row[column] for row in self.cells)
 
-    def numbers(self, column: int) -> Floats:
-        """Return the numbers of a column as written, before its unit."""
-        texts = [row[column] for row in self.cells]
-        if not all(map(_NUMBER.fullmatch, texts)):
-            bad = next(i for i, text in enumerate(texts) if not _NUMBER.fullmatch(text))
-            raise _not_a_number(texts[bad], f"{self.path}, line {self.lines[bad]}, {self.heads[column].name!r}")
-        return frozen([float(text) for text in texts])
+    def numbers(self, column: int, *, anything: str = "") -> Floats:
+        """Return the numbers of a column as written, before its unit; nan where the word for anything stands."""
+        values = []
+        for line, row in zip(self.lines, self.cells, strict=True):
+            text = row[column]
+            if anything and text == anything:
+                values.append(np.nan)
+            elif _NUMBER.fullmatch(text):
+                values.append(float(text))
+            else:
+                raise _not_a_number(text, f"{self.path}, line {line}, {self.heads[column].name!r}")
+        return frozen(values)
 
 
 def read_sheet(path: Path, where: str) -> Sheet:

@@ -1,0 +1,104 @@
+"""Aero in tables: what the devices add up to, what each does to the faces, and what totals alone leave open."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from ..car.aero_check import per_kilonewton
+from ..car.aero_totals import totals
+from ..car.model import SECTION, LoadCases
+from ..case.model import CARRIERS, FACES, Case
+from .tables import Table, table
+from .wording import ABSENT, figure, fixed, plain_name
+
+
+def totals_table(case: Case, speeds: Sequence[float]) -> Table:
+    """Downforce, drag and balance at speeds, by both conventions of the front share."""
+    found = totals(case, speeds)
+    rows = [
+        (
+            f"{fixed(speed, 1)} m/s",
+            fixed(found.downforce[i].sum(), 2, scale=1e3),
+            fixed(found.drag[i].sum(), 2, scale=1e3),
+            fixed(found.share_with[i], 3),
+            fixed(found.share_without[i], 3),
+            heights(found.ride_height[i]),
+            found.outside[i] or "inside",
+        )
+        for i, speed in enumerate(found.speed)
+    ]
+    columns = ("speed", "downforce", "drag", "front share with drag moment", "without", "ride heights, mm", "maps")
+    note = "kN, summed from the devices; straight running. Ride heights front and rear where a map asks for them."
+    return table("Aero recomputed from the devices", columns, rows, note)
+
+
+def influence_table(case: Case) -> Table:
+    """Face components and hardest-pulled stud per kilonewton of downforce on each device."""
+    found = per_kilonewton(case)
+    rows = []
+    for k, name in enumerate(found.devices):
+        for f, face in enumerate(FACES):
+            axial = found.axial[face][k]
+            worst = int(np.argmax(np.abs(axial)))
+            stud = f"{case.faces[face].studs[worst].name} {fixed(axial[worst], 3, scale=1e3, sign=True)}"
+            components = (fixed(w, 3, scale=1e3, sign=True) for w in found.section[k, f])
+            rows.append((plain_name(name), found.on[k], face, *components, stud))
+    columns = ("device", "carried by", "face", *SECTION, "stud moved most, kN")
+    note = "kN and kN·m per kN of downforce on the device, the wheels answering; studs as of a rigid face."
+    return table("One kilonewton on each device", columns, rows, note)
+
+
+def moved_table(case: Case) -> Table:
+    """M_sag at both faces per kilonewton on each device, were it carried by each of the bodies."""
+    found = per_kilonewton(case)
+    rows = []
+    for k, name in enumerate(found.devices):
+        cells = []
+        for f in range(len(FACES)):
+            for b, body in enumerate(CARRIERS):
+                text = fixed(found.moved[k, b, f, 4], 3, scale=1e3, sign=True)
+                cells.append(f"[{text}]" if body == found.on[k] else text)
+        rows.append((plain_name(name), *cells))
+    columns = ("device", *(f"{face}: on {body}" for face in FACES for body in CARRIERS))
+    note = "M_sag in kN·m per kN of downforce; in brackets as the case has it."
+    return table("Were a device carried by another body", columns, rows, note)
+
+
+def bounds_table(cases: LoadCases) -> Table | None:
+    """Least and greatest M_sag, and stud pull, over all splits of whole-car aero; None where devices are known."""
+    found = cases.aero_bounds
+    if found is None:
+        return None
+    rows = []
+    for i, name in enumerate(cases.names):
+        for face, loads in cases.faces.items():
+            ends = found.section[face][:, i]
+            axial = found.stud_axial[face][:, i]
+            worst = int(np.argmax(axial[1]))
+            cells = [_range(*ends[:, k]) for k in range(len(SECTION))]
+            rows.append((plain_name(name), face, *cells, f"{loads.studs[worst]} {_range(*axial[:, worst])}"))
+    columns = ("load case", "face", *SECTION, "most pulled stud, kN")
+    note = (
+        "kN and kN·m: least to greatest over every split of the stated totals that keeps total and balance, each "
+        f"carrier pressing down by 0 or more; {len(found.splits)} extreme splits. What this decides is not shown."
+    )
+    return table("Open because only totals of the aero are known", columns, rows, note)
+
+
+def heights(ride: np.ndarray) -> str:
+    """Return ride heights as "28.1, 43.7" in mm, or a dash."""
+    if not np.isfinite(ride).all():
+        return ABSENT
+    return ", ".join(fixed(float(h), 1, scale=1e-3) for h in ride)
+
+
+def _range(low: float, high: float) -> str:
+    ends = [fixed(float(x), 2, scale=1e3, sign=True) for x in (low, high)]
+    return ends[0] if ends[0] == ends[1] else " to ".join(ends)
+
+
+def percent(new: float, old: float) -> str:
+    """Return the change of a figure in percent, or a dash where there was none."""
+    return ABSENT if old == 0 else f"{figure(100 * (new / old - 1), digits=2, sign=True)} %"
