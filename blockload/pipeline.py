@@ -88,6 +88,7 @@ def check(
     ------
     BlockloadError
         For bad input, a load case that does not balance, or a block that cannot be solved.
+
     """
     tell = progress or (lambda _step, _share: None)
     tell("loads", 0.0)
@@ -95,6 +96,7 @@ def check(
     block, library = _respond(case, solver=solver, cache=cache, progress=tell)
     tell("margins", 0.0)
     pads, margins = _judge(case, cases, block, library)
+    margins = _over_splits(case, cases, block, library, margins, tell)
     margins = _with_movements(case, block, library, margins, tell)
     tell("margins", 1.0)
     return Run(
@@ -132,6 +134,22 @@ def _judge(
 
     pads = install(cases, block, library, case)
     return pads, judge(case, cases, block, library, pads)
+
+
+def _over_splits(
+    case: Case, cases: LoadCases, block: Block | None, library: Library | None, margins: Margins, progress: Progress
+) -> Margins:
+    """Widen the margins over every split of whole-car aero, where no more than its totals is known."""
+    if cases.aero_bounds is None:
+        return margins
+    from .car.aero_split import extreme_cases
+    from .margins.open_aero import over_splits
+
+    ends = []
+    for index, (_, other) in enumerate(extreme_cases(case)):
+        progress("splits of the downforce", index / len(cases.aero_bounds.splits))
+        ends.append(_judge(other, balance(other), block, library)[1])
+    return over_splits(case, cases, margins, ends)
 
 
 def _with_movements(
