@@ -13,6 +13,8 @@ from ..case.model import CARRIERS, FACES, Case
 from .tables import Table, table
 from .wording import ABSENT, figure, fixed, plain_name
 
+_OPEN = 0.5  # N or N·m: a smaller band is no band
+
 
 def totals_table(case: Case, speeds: Sequence[float]) -> Table:
     """Downforce, drag and balance at speeds, by both conventions of the front share."""
@@ -66,23 +68,44 @@ def moved_table(case: Case) -> Table:
     return table("Were a device carried by another body", columns, rows, note)
 
 
+def load_case_tables(cases: LoadCases) -> tuple[Table, ...]:
+    """Ride heights and map edges, and what totals alone leave open, as far as the load cases have them."""
+    return tuple(item for item in (ride_table(cases), bounds_table(cases)) if item is not None)
+
+
+def ride_table(cases: LoadCases) -> Table | None:
+    """Ride heights of every load case and which map was read beyond its grid; None where no map asks for them."""
+    if not np.isfinite(cases.ride_height).any() and not any(cases.outside_map):
+        return None
+    rows = [
+        (plain_name(name), *(fixed(h, 1, scale=1e-3) for h in cases.ride_height[i]), cases.outside_map[i])
+        for i, name in enumerate(cases.names)
+    ]
+    note = "mm at the axle lines, agreeing with the axle loads they cause. At a map's edge the force there was used."
+    return table("Ride heights", ("load case", "front", "rear", "read beyond the map"), rows, note)
+
+
 def bounds_table(cases: LoadCases) -> Table | None:
-    """Least and greatest M_sag, and stud pull, over all splits of whole-car aero; None where devices are known."""
+    """Least and greatest of what the split of whole-car aero moves; None where devices are known."""
     found = cases.aero_bounds
     if found is None:
         return None
+    sections = [found.section[face] for face in cases.faces]
+    moves = [k for k in range(len(SECTION)) if any(np.ptp(ends[..., k], axis=0).max() > _OPEN for ends in sections)]
     rows = []
     for i, name in enumerate(cases.names):
         for face, loads in cases.faces.items():
-            ends = found.section[face][:, i]
-            axial = found.stud_axial[face][:, i]
+            ends, axial = found.section[face][:, i], found.stud_axial[face][:, i]
+            if np.ptp(ends, axis=0).max() <= _OPEN:
+                continue
             worst = int(np.argmax(axial[1]))
-            cells = [_range(*ends[:, k]) for k in range(len(SECTION))]
-            rows.append((plain_name(name), face, *cells, f"{loads.studs[worst]} {_range(*axial[:, worst])}"))
-    columns = ("load case", "face", *SECTION, "most pulled stud, kN")
+            cells = (_range(*ends[:, k]) for k in moves)
+            rows.append((plain_name(name), face, *cells, loads.studs[worst], _range(*axial[:, worst])))
+    columns = ("load case", "face", *(SECTION[k] for k in moves), "most pulled stud", "its pull")
     note = (
         "kN and kN·m: least to greatest over every split of the stated totals that keeps total and balance, each "
-        f"carrier pressing down by 0 or more; {len(found.splits)} extreme splits. What this decides is not shown."
+        f"carrier pressing down by 0 or more: {len(found.splits)} extreme splits, the load cases standing at their "
+        "mean. What this decides is not shown."
     )
     return table("Open because only totals of the aero are known", columns, rows, note)
 

@@ -18,6 +18,7 @@ import numpy as np
 from .. import __version__
 from ..car.model import BODIES, SECTION, LoadCases, Term
 from ..case.model import CORNERS, Case
+from .aero_results import aero_written
 from .files import write_beside
 
 if TYPE_CHECKING:
@@ -113,6 +114,7 @@ def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
         "crank_torque": cases.crank_torque[index],
         "faces": {name: _face(cases, name, index) for name in cases.faces},
         "free_bodies": {},
+        **aero_written(cases, index),
     }
     written["free_bodies"] = {body: _terms(cases, body, index, written) for body in BODIES}
     data: dict[str, Any] = plain(written)
