@@ -40,8 +40,10 @@ def elastic_split(front: float, rear: float, chassis: float | None) -> Floats:
 
 
 def in_series(*stiffness: float | None) -> float | None:
-    """Torsional stiffness of parts one behind the other; None counts as rigid."""
+    """Torsional stiffness of parts one behind the other; None counts as rigid, and one without any leaves none."""
     known = [value for value in stiffness if value is not None]
+    if any(value <= 0 for value in known):
+        return 0.0
     return 1.0 / sum(1.0 / value for value in known) if known else None
 
 
