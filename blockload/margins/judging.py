@@ -146,6 +146,8 @@ def _doubt(item: Margin, lifted: Sequence[str]) -> str:
     low, high = item.band or (0.0, 0.0)
     if high >= 0.0:
         return f"band crosses zero, {low:.2f} to {high:.2f}: {_named(item)}"
+    if rules_out(item, lifted):
+        return f"fails at both ends of its band, but a check failed: {_named(item)}"
     why = "wheel load below zero" if item.load_case in lifted else item.trust
     return f"fails, but the number is not believed ({why}): {_named(item)}"
 

@@ -1,4 +1,8 @@
-"""Strength of the solid block: peaks over its surface, as hotspots with place, band, trust and causes."""
+"""Strength of the solid block: peaks over its surface, as hotspots with place, band, trust and causes.
+
+A peak on a sharp edge or beside a pad says little about the wall it sits in. So each criterion is looked at twice:
+the highest peaks wherever they are, and the highest among the places whose stress may be taken at its word.
+"""
 
 from __future__ import annotations
 
@@ -15,9 +19,22 @@ from ..installation.model import PadLoads
 from ..response.model import Library
 from .hotspots import peaks_apart
 from .model import Margin, SurfaceMargins
-from .places import Atlas, atlas, place_name, trust_of
+from .places import Atlas, atlas, place_name
 from .strength import CRITERIA, Criterion, Peaks, allowables, peaks, shares
+from .trust import State, Zones, trust_of, zones
 from .wording import INCREMENT, causes, margin_at
+
+EVERYWHERE, CLEAR = 6, 6  # hotspots per criterion: highest of all, and highest outside the zones of doubt
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Ground:
+    """The block a field lives on, with its named places and zones of doubt."""
+
+    block: Block
+    library: Library
+    where: Atlas
+    marked: Zones
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -41,11 +58,12 @@ def strength_margins(
 ) -> tuple[tuple[Margin, ...], SurfaceMargins]:
     """Return the strength margins at the hotspots of every criterion, and the field at the middle stiffness."""
     fields = strength_fields(case, block, library, pads)
-    where = atlas(block, library)
+    where = atlas(block)
+    ground = Ground(block=block, library=library, where=where, marked=zones(where, block, library))
     margins = [
-        _margin(field, int(entry), where=where, cases=cases, library=library, pads=pads)
+        _margin(field, int(entry), ground, cases=cases, pads=pads)
         for field in fields
-        for entry in _hot_entries(field, library)
+        for entry in hot_entries(field, ground)
     ]
     return tuple(margins), _surface(fields, pads.middle)
 
@@ -60,19 +78,24 @@ def strength_fields(case: Case, block: Block, library: Library, pads: PadLoads) 
     return tuple(result)
 
 
-def _hot_entries(field: Field, library: Library) -> Ints:
-    """Entries at the peaks of the worst ratio over the variants."""
+def hot_entries(field: Field, ground: Ground) -> Ints:
+    """Return the entries at the peaks of the worst ratio over the variants, everywhere and in the clear."""
+    library = ground.library
     worst = field.ratio.max(axis=1)
     at_node = np.full(len(library.surface_points), -np.inf)
     np.maximum.at(at_node, library.entry_node, worst)
-    nodes = peaks_apart(at_node, library.surface_points, library.surface_triangles)
+    surface = (library.surface_points, library.surface_triangles)
+    everywhere = peaks_apart(at_node, *surface, most=EVERYWHERE)
+    clear = peaks_apart(np.where(ground.marked.clear, at_node, 0.0), *surface, most=CLEAR)
+    nodes = np.array(list(dict.fromkeys([*everywhere.tolist(), *clear.tolist()])), dtype=np.int64)
     order = np.lexsort((-worst, library.entry_node))
     first = order[np.searchsorted(library.entry_node[order], nodes)]
     result: Ints = first
     return result
 
 
-def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library: Library, pads: PadLoads) -> Margin:
+def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads: PadLoads) -> Margin:
+    library = ground.library
     ratio = field.ratio[entry]
     variant = int(ratio.argmax())
     case_index = int(field.peaks.case[entry, variant])
@@ -82,9 +105,8 @@ def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library
     state = pads.weights[variant, case_index]
     at = library.surface_points[library.entry_node[entry]]
     split = shares(field.criterion, np.asarray(library.stress[entry]).dot(state.T).T)
-    trust, reason = trust_of(
-        where, library, entry, criterion=field.criterion, weights=state.sum(axis=0), applied=applied
-    )
+    known = State(criterion=field.criterion, weights=state.sum(axis=0), applied=applied)
+    trust, reason = trust_of(ground.where, ground.marked, ground.block, library, entry, known)
     second = None
     if len(cases.names) > 1:
         value = float(field.peaks.second[entry, variant])
@@ -93,7 +115,7 @@ def _margin(field: Field, entry: int, *, where: Atlas, cases: LoadCases, library
             second = (name, margin_at(strength, factor, value))
     return Margin(
         criterion=field.criterion.name,
-        place=place_name(where, at, library.volumes[library.entry_volume[entry]]),
+        place=place_name(ground.where, at, library.volumes[library.entry_volume[entry]]),
         at=(float(at[0]), float(at[1]), float(at[2])),
         load_case=cases.names[case_index],
         applied=applied,
