@@ -78,7 +78,7 @@ def _stud(face: str, name: str, item: OneStudTable, common: StudTable, notes: No
     for entry in ("size", "property_class"):
         if values[entry] is None:
             example = metas(StudTable)[entry].example
-            found = f"no {entry.replace('_', ' ')} is given for stud {name}"
+            found = f"no {entry.replace('_', ' ')} is given for the studs of the {face} face"
             remedy = f"add {entry} = {example} to stud = {{...}} under [faces.{face}]"
             notes.problem(f"faces.{face}.stud.{entry}", found, f"for example {example}", remedy)
             return None
@@ -147,8 +147,10 @@ def _check_pattern(face: str, studs: tuple[Stud, ...], notes: Notes) -> None:
     points = np.array([stud.at for stud in studs]).reshape(-1, 2)
     spread = np.linalg.svd(points - points.mean(axis=0), compute_uv=False) if len(studs) > 2 else np.zeros(2)
     if not notes.problems and spread[-1] < 0.01:
-        found = f"{len(studs)} studs on one line (or fewer than three) hold no moment"
-        remedy = f'name each stud with its (y, z), for example TL = "(0.24, 0.45) m" under [faces.{face}.studs]'
+        found = "no stud positions are given"
+        if studs:
+            found = f"{len(studs)} studs {'on one line ' if len(studs) > 2 else ''}hold no moment"
+        remedy = f'add each stud with its (y, z), for example TL = "(0.24, 0.45) m" under [faces.{face}.studs]'
         notes.problem(f"faces.{face}.studs", found, "three or more studs, not on one line", remedy)
         return
     for i, j in np.argwhere(np.triu(np.linalg.norm(points[:, None] - points, axis=2) < 1e-3, 1)):

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import difflib
 from collections.abc import Callable, Iterator, Sequence
 from functools import cache
 from typing import Any
@@ -19,12 +20,19 @@ def refusals(error: ValidationError, where: Callable[[str], str]) -> list[CaseEr
     return [_refusal(item, where) for item in error.errors(include_url=False)]
 
 
+class SeveralCaseError(CaseError):
+    """Several refusals of one case file, so that a user mends them in one go; `errors` keeps each with its parts."""
+
+    def __init__(self, place: str, errors: Sequence[CaseError]) -> None:
+        shown = "\n".join(f"{number}. {problem}" for number, problem in enumerate(errors, 1))
+        super().__init__(place, f"{len(errors)} things to mend\n{shown}")
+        self.errors = tuple(errors)
+
+
 def together(problems: Sequence[CaseError], place: str) -> CaseError:
-    """Return one error for one or several refusals, so that a user mends them in one go."""
-    if len(problems) == 1:
-        return problems[0]
-    shown = "\n".join(f"{number}. {problem}" for number, problem in enumerate(problems, 1))
-    return CaseError(place, f"{len(problems)} things to mend\n{shown}")
+    """Return one error for one or several refusals; of several about one key only the first, as the rest follow."""
+    first = list({problem.where: problem for problem in reversed(problems)}.values())[::-1]
+    return first[0] if len(first) == 1 else SeveralCaseError(place, first)
 
 
 def _refusal(item: Any, where: Callable[[str], str]) -> CaseError:
@@ -63,13 +71,20 @@ def _unknown(location: tuple[str | int, ...], place: str) -> CaseError:
     key = join_key(location)
     siblings = _keys_at(location[:-1])
     prefix = join_key(location[:-1])
-    guess = nearest(str(location[-1]), siblings)
-    if guess:
-        word = guess.split("'")[1]
-        guess = f"Did you mean {join_key([*location[:-1], word])}?"
-    else:
-        guess = nearest(key, known_keys())
-    return CaseError(place, f"{key} is not a key of a case file", f"in [{prefix}]: {', '.join(siblings)}", guess)
+    allowed = f"in [{prefix}]: {', '.join(siblings)}" if prefix else f"at the top: {', '.join(siblings)}"
+    return CaseError(place, f"{key} is not a key of a case file", allowed, _guess(location, siblings))
+
+
+def _guess(location: tuple[str | int, ...], siblings: Sequence[str]) -> str:
+    """Return the nearest right key: in the same table, then the same word elsewhere, then the nearest of all."""
+    word = str(location[-1])
+    near = difflib.get_close_matches(word, siblings, n=1, cutoff=0.6)
+    if near:
+        return f"Did you mean {join_key([*location[:-1], near[0]])}?"
+    elsewhere = [key for key in known_keys() if key.endswith(f".{word}")]
+    if elsewhere:
+        return f"{word} is a key elsewhere: {', '.join(elsewhere[:3])}"
+    return nearest(join_key(location), known_keys())
 
 
 def _expected(location: tuple[str | int, ...], kind: str) -> str:

@@ -28,6 +28,7 @@ def check_car(
     remedy = "check the sign (x points forward, so the rear axle is at minus the wheelbase) and the unit"
     if not WHEELBASE[0] <= wheelbase <= WHEELBASE[1]:
         notes.problem("axles.rear.x", f"the wheelbase comes to {wheelbase:.4g} m", "1.5 m to 4 m", remedy)
+        return
     if rear >= bodies["engine"].cg[0]:
         found = f"the rear axle (x = {show(rear, 'm')}) is not behind the engine"
         notes.problem("axles.rear.x", found, "x more negative than the engine's CG", remedy)

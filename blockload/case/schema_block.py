@@ -193,7 +193,7 @@ class InstallationTable(Table):
         "per pad, spread over its area; estimated from the studs and bounded by 1/10 and 10 when absent"
     )
     tub: Any = words(
-        '"rigid", or a 3n x 3n stiffness matrix in stud order [N/m]',
+        '"rigid", or a 3n x 3n stiffness matrix in stud order [N/m], in the car\'s axes',
         default="rigid",
         source="unsourced",
         example='"rigid"',

@@ -287,6 +287,7 @@ class DriveTable(Table):
     )
     crank_direction: int | None = words(
         "sign of crank rotation about this file's x (right-hand rule): 1 or -1",
+        frame="sign",
         default="-1",
         source="anticlockwise seen from the flywheel at the rear: SAE J824 standard rotation (from memory)",
         example="-1",
