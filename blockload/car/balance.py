@@ -29,6 +29,7 @@ from .ride_height import in_the_air
 from .sources import elementary, source_names
 from .suspension import axle_maps, body_wrenches, corner_wrenches, link_loads
 from .terms import body_terms, crank_terms, face_terms, pickup_terms, wheel_terms
+from .tyres import tyre_use
 from .wheels import tyre_answer
 from .wrench import sealed
 
@@ -90,6 +91,8 @@ def balance(
         crank_couple=sealed(couple),
         faces=faces,
         links=link_loads(maps, wrenches),
+        overall_ratio=inputs.ratio,
+        tyre_use=sealed(tyre_use(case.tyres, wheel_force.sum(axis=1))),
         engine_loads=engine_loads(case, inputs, frame, maps, corners.shaft, wrenches),
         terms=terms,
         residual=sealed(residual.max(axis=1)),

@@ -95,7 +95,8 @@ class LoadCases:
     lifted (C, 4) tells which wheel is off the ground while the other three carry the car; wheel_lift (C,) whether three
     would not do either, so that some wheel load of the whole manoeuvre (all parts) is below zero: the ground would have
     to pull, and such a case is not a state of the car.
-    links maps each corner that has them to its tensions.
+    links maps each corner that has them to its tensions; overall_ratio (C,) is nan where none was given; tyre_use
+    (C, 4) is the share of its grip each tyre uses, nan where friction is not known.
     ride_height (C, 2), front and rear, is nan where no aero map asks for it; outside_map (C,) says which map was read
     beyond its grid, and where; aero_bounds is there where only totals of the aero are known, the case itself then
     standing at the mean of the extreme splits.
@@ -121,6 +122,8 @@ class LoadCases:
     wheel_lift: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=bool))
     lifted: NDArray[np.bool_] = field(default_factory=lambda: np.zeros((0, 4), dtype=bool))
     links: Mapping[str, LinkLoads] = field(default_factory=dict)
+    overall_ratio: Floats = field(default_factory=lambda: np.zeros(0))
+    tyre_use: Floats = field(default_factory=lambda: np.zeros((0, 4)))
     ride_height: Floats = field(default_factory=lambda: np.zeros((0, 2)))
     outside_map: tuple[str, ...] = ()
     aero_bounds: AeroBounds | None = None
