@@ -8,7 +8,7 @@ from ..margins.model import Margin
 from .drawing import GREY, INK, PALE, SMALL, Sketch, circle, line, rect, text
 from .wording import band, fixed, plain_name
 
-LEFT, RIGHT, ROW = 480.0, 1060.0, 30.0
+LEFT, RIGHT, ROW = 470.0, 930.0, 28.0
 LEAST, MOST = -0.6, 2.0
 
 
@@ -41,7 +41,7 @@ def _row(sketch: Sketch, item: Margin, y: float) -> None:
         sketch.add(rect((a - 2, y - 9, max(b, a) + 2, y + 3), fill=fill, stroke="#fff", width=1.5))
         sketch.add(circle((a, y - 3), 5.5, fill="#fff", stroke=fill, width=3))
     trust = "" if item.trust == "converged" else f" ({item.trust})"
-    sketch.add(text((RIGHT + 14, y + 1), _cut(f"{shown}{trust}", 20), size=SMALL))
+    sketch.add(text((RIGHT + 14, y + 1), _cut(f"{shown}{trust}", 34), size=SMALL))
 
 
 def _x(margin: float) -> float:

@@ -19,7 +19,8 @@ from .wording import fixed
 
 USE_LIMIT = 2.0  # the end of the colour range, in use of strength; zero margin sits in the middle
 STEPS = 400
-SAFE = ((242, 244, 245), (196, 217, 231), (122, 172, 206), (36, 101, 150))
+SAFE = ((244, 245, 245), (204, 224, 236), (146, 188, 217), (83, 142, 186), (28, 92, 143))
+SAFE_AT = (0.0, 0.08, 0.25, 0.55, 1.0)  # use of strength of each: a well-used block shows its load paths too
 FAILED = ((231, 167, 94), (176, 101, 27), (84, 40, 4))
 STRESS = ((247, 242, 232), (224, 197, 173), (184, 144, 138), (128, 93, 113), (66, 48, 84), (22, 16, 44))
 BANDS = 0.1  # width of a band beyond zero margin, in use of strength
@@ -28,7 +29,7 @@ BANDS = 0.1  # width of a band beyond zero margin, in use of strength
 def use_colours(steps: int = STEPS) -> NDArray[np.uint8]:
     """Return colours (steps, 3) for use of strength from 0 to USE_LIMIT, hard edge at 1."""
     use = (np.arange(steps) + 0.5) * USE_LIMIT / steps
-    safe = _ramp(SAFE, use)
+    safe = _ramp(SAFE, use, SAFE_AT)
     failed = _ramp(FAILED, (use - 1.0) / (USE_LIMIT - 1.0))
     dark = (np.floor((use - 1.0) / BANDS) % 2 == 1)[:, None]
     failed = np.where(dark, 0.78 * failed, failed)
@@ -41,15 +42,17 @@ def stress_colours(steps: int = STEPS) -> NDArray[np.uint8]:
     return _ramp(STRESS, (np.arange(steps) + 0.5) / steps).round().astype(np.uint8)
 
 
-def _ramp(stops: tuple[tuple[int, int, int], ...], share: Any) -> NDArray[np.float64]:
-    places = np.linspace(0.0, 1.0, len(stops))
+def _ramp(
+    stops: tuple[tuple[int, int, int], ...], share: Any, at: tuple[float, ...] | None = None
+) -> NDArray[np.float64]:
+    places = np.linspace(0.0, 1.0, len(stops)) if at is None else np.array(at)
     channels = [np.interp(share, places, [stop[k] for stop in stops]) for k in range(3)]
     return np.stack(channels, axis=-1)
 
 
 def margin_legend() -> str:
     """Return the legend of the margin pictures as SVG."""
-    ticks = [(1 / (1 + m), _margin_word(m)) for m in (4.0, 1.0, 0.5, 0.25, 0.0, -0.2, -0.5)]
+    ticks = [(1 / (1 + m), _margin_word(m)) for m in (9.0, 3.0, 1.0, 0.5, 0.25, 0.0, -0.2, -0.5)]
     title = "margin = allowable / (factor × applied) − 1"
     return _legend(use_colours(), [(use / USE_LIMIT, word) for use, word in ticks], title, "below zero fails, banded")
 

@@ -17,9 +17,10 @@ from ..car.model import SECTION, LoadCases
 from ..case.model import Case
 from ..margins.model import Margin, Margins
 from . import tables
+from .aero_tables import load_case_tables
 from .cautions import ONE_LINE
 from .choice import governing_index, lowest, lowest_per_criterion
-from .wording import band, figure, fixed, plain_name, point, quantity
+from .wording import band, figure, fixed, plain_name, quantity
 
 WIDTH = 100
 STYLES = {"ruled out": "bold red", "not shown": "bold yellow", "shown within scope": "bold green"}
@@ -59,6 +60,7 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         tables.wheel_loads(cases),
         tables.section_wrenches(cases),
         tables.stud_extremes(cases),
+        *load_case_tables(cases),
     )
     failed = [item for item in case.checks if not item.ok]
     extra = [tables.check_table(failed, "Checks of the case file that failed")] if failed else []
@@ -106,31 +108,29 @@ def _faces(cases: LoadCases, indices: Sequence[int]) -> RichTable:
 
 def _margins(margins: Margins) -> RichTable:
     grid = _empty("Lowest margin of each criterion (below zero fails)")
-    for name in ("criterion", "place", "load case", "applied", "allowable", "margin", "trust"):
-        grid.add_column(name, justify="right" if name in ("applied", "allowable", "margin") else "left")
+    for name in ("criterion", "place", "load case", "applied", "allowable", "margin"):
+        number = name in ("applied", "allowable", "margin")
+        grid.add_column(name, justify="right" if number else "left", no_wrap=True)
     shown = lowest_per_criterion(margins.margins)
     for item in shown[:9]:
         style = "red" if item.margin is not None and item.margin < 0 else ""
         grid.add_row(*_margin_cells(item), style=style)
     if len(shown) > 9:
-        grid.add_row(f"and {len(shown) - 9} more in the report", *[""] * 6)
+        grid.add_row(f"and {len(shown) - 9} more in the report", *[""] * 5)
     if not shown:
-        grid.add_row("none", *[""] * 6)
+        grid.add_row("none", *[""] * 5)
     return grid
 
 
 def _margin_cells(item: Margin) -> tuple[str, ...]:
-    place = _short(plain_name(item.place), 20)
-    if any(item.at) and len(place) < 3:
-        place = point(item.at, 2)
+    trust = "" if item.trust == "converged" else f" ({item.trust})"
     return (
-        _short(item.criterion, 22),
-        place,
-        _short(plain_name(item.load_case), 16),
+        _short(item.criterion, 16),
+        _short(plain_name(item.place) + trust, 24),
+        _short(plain_name(item.load_case), 15),
         quantity(item.applied, item.unit),
         quantity(item.allowable, item.unit),
         band(item.band, item.margin),
-        _short(item.trust, 10),
     )
 
 

@@ -72,7 +72,7 @@ def _paint(plotter: Any, mesh: Any, scalars: str, table: Any) -> None:
     )
     edges = _sharp(mesh)
     if edges.n_points:
-        plotter.add_mesh(edges, color="#30383c", line_width=1.4, opacity=0.75)
+        plotter.add_mesh(edges, color="#30383c", line_width=2.0)
     if scalars == "use":
         edge = mesh.contour([1.0], scalars="use")
         if edge.n_points:
@@ -89,7 +89,7 @@ def _look(plotter: Any, at: Floats, direction: Floats, half_height: float) -> No
     plotter.camera_position = [tuple(np.asarray(at) + 3.0 * direction), tuple(at), up]
     plotter.camera.parallel_scale = half_height
     plotter.renderer.reset_camera_clipping_range()
-    plotter.render()
+    plotter.render_window.Render()
 
 
 def overview(data: dict[str, Any], folder: Path) -> dict[str, Any]:
@@ -129,36 +129,48 @@ def hotspots(data: dict[str, Any], folder: Path) -> dict[str, Any]:
     """Draw one close-up per hotspot, from a direction in which the spot itself can be seen."""
     mesh = _mesh(data["points"], data["triangles"], use=data["use"])
     normals = mesh.compute_normals(cell_normals=False, split_vertices=False, consistent_normals=False)["Normals"]
-    views = []
-    for spot in data["hotspots"]:
-        node = int(np.linalg.norm(data["points"] - spot, axis=1).argmin())
-        direction, clear = _clear_direction(mesh, spot, np.asarray(normals[node]))
-        views.append((spot, direction, clear, _reach(data, node)))
     drawn: dict[str, Any] = {}
+    hidden = []
     with _plotter(CLOSE) as plotter:
         _paint(plotter, mesh, "use", _table(use_colours(), USE_LIMIT))
-        for k, (spot, direction, clear, reach) in enumerate(views):
-            if clear:
-                drawn[f"hotspot_{k}"] = _close_up(plotter, folder / f"hotspot_{k}.png", spot, direction, reach)
-    for k, (spot, direction, clear, reach) in enumerate(views):
-        if not clear:
-            opened = mesh.clip(normal=direction, origin=spot + 0.006 * direction)
-            with _plotter(CLOSE) as plotter:
-                _paint(plotter, opened, "use", _table(use_colours(), USE_LIMIT))
-                shown = _close_up(plotter, folder / f"hotspot_{k}.png", spot, direction, reach)
-            drawn[f"hotspot_{k}"] = {**shown, "cut": True}
+        for k, spot in enumerate(data["hotspots"]):
+            node = int(np.linalg.norm(data["points"] - spot, axis=1).argmin())
+            reach, path = _reach(data, node), folder / f"hotspot_{k}.png"
+            for direction in _clear_directions(mesh, spot, np.asarray(normals[node])):
+                if _aim(plotter, spot, direction, reach):
+                    _close_up(plotter, path, spot, direction, reach)
+                    drawn[path.stem] = {"visible": True, "cut": False}
+                    break
+            else:
+                hidden.append((path, spot, np.asarray(normals[node], dtype=float), reach))
+    for path, spot, normal, reach in hidden:
+        opened = mesh.clip(normal=normal, origin=spot + 0.006 * normal)
+        with _plotter(CLOSE) as plotter:
+            _paint(plotter, opened, "use", _table(use_colours(), USE_LIMIT))
+            visible = _aim(plotter, spot, normal, reach)
+            _close_up(plotter, path, spot, normal, reach, ring=visible)
+            drawn[path.stem] = {"visible": visible, "cut": True}
     return drawn
 
 
-def _close_up(plotter: Any, path: Path, spot: Floats, direction: Floats, reach: float) -> dict[str, Any]:
-    centre = spot + 0.004 * direction
-    ring = pyvista.Disc(center=centre, inner=0.16 * reach, outer=0.18 * reach, normal=direction, c_res=60)
-    mark = plotter.add_mesh(ring, color="black", lighting=False)
+def _aim(plotter: Any, spot: Floats, direction: Floats, reach: float) -> bool:
+    """Point the camera at the spot; whether the spot is what is seen there."""
     _look(plotter, spot, direction, reach)
+    return _seen(plotter, spot)
+
+
+def _close_up(plotter: Any, path: Path, spot: Floats, direction: Floats, reach: float, *, ring: bool = True) -> None:
+    """Draw the view already aimed at; the ring lies before everything, so it needs a spot that is seen."""
+    mark = None
+    if ring:
+        centre = spot + 1.0 * direction / np.linalg.norm(direction)
+        circle = pyvista.Disc(center=centre, inner=0.16 * reach, outer=0.18 * reach, normal=direction, c_res=60)
+        mark = plotter.add_mesh(circle, color="black", lighting=False)
+        plotter.renderer.reset_camera_clipping_range()
+        plotter.render_window.Render()
     plotter.screenshot(str(path))
-    visible = _seen(plotter, spot)
-    plotter.remove_actor(mark)
-    return {"visible": visible, "cut": False}
+    if mark is not None:
+        plotter.remove_actor(mark)
 
 
 def _reach(data: dict[str, Any], node: int) -> float:
@@ -168,20 +180,21 @@ def _reach(data: dict[str, Any], node: int) -> float:
     return float(np.clip(4.0 * away[hot].max(initial=0.0), 0.04, 0.12))
 
 
-def _clear_direction(mesh: Any, spot: Floats, normal: Floats) -> tuple[Floats, bool]:
-    """Return the direction nearest the normal from which nothing hides the spot, and whether there is one."""
-    turn = np.pi * (3.0 - np.sqrt(5.0)) * np.arange(200)
-    z = 1.0 - (2.0 * np.arange(200) + 1.0) / 200
+def _clear_directions(mesh: Any, spot: Floats, normal: Floats, most: int = 8) -> list[Floats]:
+    """Return directions from which no wall hides the spot, those nearest the normal and a little above it first."""
+    count = 200
+    turn = np.pi * (3.0 - np.sqrt(5.0)) * np.arange(count)
+    z = 1.0 - (2.0 * np.arange(count) + 1.0) / count
     around = np.column_stack([np.sqrt(1 - z * z) * np.cos(turn), np.sqrt(1 - z * z) * np.sin(turn), z])
-    # A view from slightly above reads best, so among clear views that one is preferred.
     worth = around @ normal + 0.25 * around[:, 2] - 0.5 * np.abs(around[:, 2])
+    clear: list[Floats] = []
     for k in np.argsort(-worth):
-        if around[k] @ normal < 0.15:
+        if around[k] @ normal < 0.15 or len(clear) == most:
             continue
         hits, _ = mesh.ray_trace(spot + 0.0008 * around[k], spot + 3.0 * around[k], first_point=True)
         if len(hits) == 0:
-            return around[k], True
-    return normal / np.linalg.norm(normal), False
+            clear.append(around[k])
+    return clear
 
 
 def _seen(plotter: Any, spot: Floats) -> bool:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import base64
+import re
 from collections.abc import Iterable
 from datetime import UTC, datetime
 from functools import cache
@@ -10,7 +11,7 @@ from pathlib import Path
 from typing import Any
 
 from jinja2 import Environment, FileSystemLoader, StrictUndefined
-from markupsafe import Markup
+from markupsafe import Markup, escape
 
 from .. import __version__
 from ..car.model import LoadCases
@@ -61,8 +62,8 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "level": LEVEL_WORDS.get(verdict.level, verdict.level),
         "lowest": None if verdict.lowest_margin is None else fixed(verdict.lowest_margin, 2),
         "governing": plain_name(verdict.governing),
-        "echo": _inline(echo_svg(case, cases, index=index)),
-        "bands": _inline(bands_svg(lowest_per_criterion(margins.margins)[:8])) if margins.margins else "",
+        "echo": _inline(echo_svg(case, None)),
+        "bands": _inline(bands_svg(lowest_per_criterion(margins.margins)[:7])) if margins.margins else "",
         "words": [tables.section_in_words(cases, i) for i in shown[:2]],
         "routes": routes(cases, index, run.library, run.pads),
         "cautions": cautions(case),
@@ -70,11 +71,12 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "unsourced": tables.unsourced(case),
         "pictures": _block_pictures(pictures),
         "loads": _load_tables(case, cases),
-        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in shown],
+        "governing_faces": _inline(faces_svg(cases, index, key="governing")),
+        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in shown[1:]],
         "studs": [*_pad_tables(run, shown[:1]), *(tables.stud_forces(cases, i) for i in shown)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
-        "margins": [tables.margin_table(worst), tables.cause_table(worst)],
+        "margins": [tables.margin_table(worst), tables.cause_table(worst[:24])],
         "stiffness": _stiffness(margins),
         "requirements": tables.requirement_tables(margins),
         "checks": _checks(case, margins),
@@ -90,14 +92,15 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "title": case.title,
         "verdict": None,
         "level": "loads only: nothing is judged",
-        "echo": _inline(echo_svg(case, cases, index=index)),
+        "echo": _inline(echo_svg(case, None)),
         "words": [tables.section_in_words(cases, index)],
         "routes": routes(cases, index),
         "cautions": cautions(case),
         "not_judged": ("everything: this page shows loads, no margin",),
         "unsourced": tables.unsourced(case),
         "loads": _load_tables(case, cases),
-        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in range(len(cases.names))],
+        "governing_faces": _inline(faces_svg(cases, index, key="governing")),
+        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in range(len(cases.names)) if i != index],
         "studs": [tables.stud_forces(cases, index)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
@@ -184,13 +187,20 @@ def _inline(svg: str) -> Markup:
 
 @cache
 def _environment() -> Environment:
-    return Environment(
+    made = Environment(
         loader=FileSystemLoader(Path(__file__).parent),
         autoescape=True,
         undefined=StrictUndefined,
         trim_blocks=True,
         lstrip_blocks=True,
     )
+    made.filters["symbols"] = _symbols
+    return made
+
+
+def _symbols(words: str) -> Markup:
+    """A text with symbols such as M_sag set with their subscript; the text is escaped first."""
+    return Markup(re.sub(r"\b([A-Zaα])_([a-z]{1,3})\b", r"\1<sub>\2</sub>", str(escape(words))))  # noqa: S704
 
 
 def _render(template: str, values: dict[str, Any]) -> str:

@@ -12,6 +12,7 @@ from collections.abc import Iterable, Sequence
 
 MINUS = "\N{MINUS SIGN}"
 ABSENT = "\N{EN DASH}"
+NO_BREAK = "\N{NO-BREAK SPACE}"
 CORNER_NAMES = {"FL": "front left", "FR": "front right", "RL": "rear left", "RR": "rear right"}
 
 # Component: unit, divisor, words for plus, words for minus.
@@ -87,7 +88,7 @@ UNIT_SCALES = {"Pa": ("MPa", 1e6), "N": ("kN", 1e3), "N·m": ("kN·m", 1e3), "N*
 def quantity(value: float | None, unit: str, *, sign: bool = False) -> str:
     """Return an SI value in the report's unit, with the unit."""
     shown, scale = UNIT_SCALES.get(unit, (unit, 1.0))
-    return f"{figure(value, scale=scale, sign=sign)} {shown}".rstrip() if value is not None else ABSENT
+    return f"{figure(value, scale=scale, sign=sign)}{NO_BREAK}{shown}".rstrip() if value is not None else ABSENT
 
 
 def plain_name(name: str) -> str:
