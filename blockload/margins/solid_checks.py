@@ -1,7 +1,7 @@
 """What is measured on every installed block and can fail: library, installation and the field inside the block.
 
 Each check has a limit that a right analysis meets by orders of magnitude: identities of the dense algebra 1e-9, those
-of the field 1e-6.
+of the field 1e-6. What is left out by choice is sized against two per cent of the engine's own acceleration.
 """
 
 from __future__ import annotations
@@ -21,6 +21,7 @@ from ..response.spreading import unit_wrenches
 from .load_checks import below
 
 IDENTITY, FIELD = 1e-9, 1e-6
+LEFT_OUT = 0.02
 
 # Name in Library.checks: what it says, and its limit.
 LIBRARY_CHECKS = {
@@ -43,6 +44,7 @@ def solid_checks(case: Case, cases: LoadCases, block: Block, library: Library, p
         "flexibility is the average motion of the attachments", flexibility_gap(block, library), FIELD, "recomputed"
     )
     yield from _installed(case, cases, block, library, pads)
+    yield _left_out(cases, pads)
     yield from _metal(case, block, pads)
     yield _cut(cases, block, library, pads)
 
@@ -78,6 +80,15 @@ def _installed(case: Case, cases: LoadCases, block: Block, library: Library, pad
     yield below(
         "inertia counted once: relief acceleration is the engine's own a - g and alpha", pads.relief_gap, IDENTITY
     )
+
+
+def _left_out(cases: LoadCases, pads: PadLoads) -> Check:
+    """Size of ω×(ω×r) in the block, which is no rigid linear field, against the engine's own acceleration."""
+    own = np.linalg.norm(cases.engine_acceleration.sum(axis=1), axis=1)
+    worst = int(np.argmax(pads.left_out))
+    note = f"{pads.left_out[worst]:.2g} m/s² in {cases.names[worst]}"
+    share = pads.left_out[worst] / max(own.max(), np.finfo(float).tiny)
+    return below("centripetal acceleration left out inside the block is small", share, LEFT_OUT, note)
 
 
 def _metal(case: Case, block: Block, pads: PadLoads) -> Iterator[Check]:

@@ -1,4 +1,4 @@
-"""A real elastic brick between the faces, mirror-symmetric, with pads of real facets: small enough to solve in a test."""
+"""An elastic brick between the faces, mirror-symmetric, with pads of real facets: small enough to solve in a test."""
 
 from __future__ import annotations
 
@@ -37,7 +37,7 @@ def solid_mesh() -> MeshTet2:
     left = MeshTet.init_tensor(x, y, z)
     points = np.hstack([left.p, left.p * np.array([[1.0], [-1.0], [1.0]])])
     cells = np.hstack([left.t, left.t[[1, 0, 2, 3]] + left.p.shape[1]])
-    rounded, first, inverse = np.unique(np.round(points, 9), axis=1, return_index=True, return_inverse=True)
+    _, first, inverse = np.unique(np.round(points, 9), axis=1, return_index=True, return_inverse=True)
     return MeshTet2.from_mesh(MeshTet(points[:, first], inverse.ravel()[cells]))
 
 

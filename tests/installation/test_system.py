@@ -71,7 +71,8 @@ def test_a_pad_without_a_stiffness_is_refused(entries) -> None:
 
 def test_a_rigid_block_on_equal_pads_has_the_stud_forces_of_the_rigid_face() -> None:
     """The rear face, whose wrench is given: bolt-group formula a = N/n + M d/Σd², s = V/n + T r/Σr² (Shigley, bolted
-    joints in shear and eccentric loading). A pad's own bending takes a little of the moments, so it is made tiny."""
+    joints in shear and eccentric loading). A pad's own bending takes a little of the moments, so it is made tiny.
+    """
     case = car.case(pad_stiffness=(("given", K_N, K_N),))
     block = car.block(case)
     block = with_points_for_pads(block)
@@ -87,15 +88,14 @@ def test_a_rigid_block_on_equal_pads_has_the_stud_forces_of_the_rigid_face() -> 
 
 def with_points_for_pads(block):
     """Pads shrunk to a tenth of a millimetre: forces only."""
-    shrunk = tuple(
-        replace(item, area=1e-4 * item.area, moments=1e-8 * item.moments) for item in block.attachments
-    )
+    shrunk = tuple(replace(item, area=1e-4 * item.area, moments=1e-8 * item.moments) for item in block.attachments)
     return replace(block, attachments=shrunk)
 
 
 def test_a_second_path_shares_with_the_pads_like_two_springs() -> None:
     """A strut along x at the centroid of the rear pads, beside pads that are four springs: k_s/(k_s + 4 k_n) of the
-    thrust goes through it (two springs side by side, opened by hand)."""
+    thrust goes through it (two springs side by side, opened by hand).
+    """
     stiffness = 5e8
     rear = {"TL": (0.2, 0.4), "TR": (-0.2, 0.4), "BL": (0.2, 0.1), "BR": (-0.2, 0.1)}
     path = SecondPath(
@@ -112,7 +112,6 @@ def test_a_second_path_shares_with_the_pads_like_two_springs() -> None:
     cases = car.load_cases(case, rear=wrench)
     pads, library = soft_pads(case, block, cases)
 
-    # Front and rear pads are in series between tub and gearbox: 2 k_n, beside the strut.
     pair = 4 * K_N / 2
     share = stiffness / (stiffness + pair)
     strut = pads.path_force[pads.middle, 0, 0, 0]

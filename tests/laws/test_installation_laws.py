@@ -75,7 +75,11 @@ def test_a_mirrored_load_gives_mirrored_pads() -> None:
     block, library = solid_car.solved()
     case = solid_car.case()
     rng = np.random.default_rng(4)
-    rear, acceleration, rotation = rng.normal(size=(1, 1, 6)) * 1e3, rng.normal(size=(1, 1, 3)), rng.normal(size=(1, 1, 3))
+    rear, acceleration, rotation = (
+        rng.normal(size=(1, 1, 6)) * 1e3,
+        rng.normal(size=(1, 1, 3)),
+        rng.normal(size=(1, 1, 3)),
+    )
     crank = np.array([[200.0]])
 
     right = install(
@@ -238,7 +242,9 @@ def test_a_pad_moved_by_50_mm_is_caught() -> None:
     """The library was solved with a pad elsewhere: its motion is not what the stored flexibility says."""
     block, library = solid_car.solved()
     moved = tuple(
-        replace(item, centroid=item.centroid + [0.0, 0.05, 0.0]) if (item.kind, item.name) == ("front", "TL") else item
+        replace(item, centroid=item.centroid + np.array([0.0, 0.05, 0.0]))
+        if (item.kind, item.name) == ("front", "TL")
+        else item
         for item in block.attachments
     )
     assert flexibility_gap(replace(block, attachments=moved), library) > 1e-3
@@ -247,9 +253,7 @@ def test_a_pad_moved_by_50_mm_is_caught() -> None:
 def test_left_and_right_swapped_is_caught() -> None:
     """Names of two pads exchanged between block and library."""
     block, library = solid_car.solved()
-    swapped = tuple(
-        replace(item, name=SWAP[item.name]) if item.kind == "front" else item for item in block.attachments
-    )
+    swapped = tuple(replace(item, name=SWAP[item.name]) if item.kind == "front" else item for item in block.attachments)
     assert flexibility_gap(replace(block, attachments=swapped), library) > 1e-3
 
 

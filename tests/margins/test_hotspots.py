@@ -42,7 +42,7 @@ def test_no_two_peaks_within_15_mm_along_the_surface() -> None:
 def test_distance_is_along_the_surface_and_not_through_the_air() -> None:
     """Two sheets 5 mm apart, joined nowhere: a peak on each is kept."""
     points, triangles = sheet()
-    both = np.vstack([points, points + [0.0, 0.0, 0.005]])
+    both = np.vstack([points, points + np.array([0.0, 0.0, 0.005])])
     cells = np.vstack([triangles, triangles + len(points)])
     values = np.tile(bump(points, (0.05, 0.05), 1.0), 2)
 

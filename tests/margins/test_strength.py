@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -87,8 +89,6 @@ def test_shares_sum_to_one_and_are_the_slope(criterion, parts) -> None:
 
 
 def test_castings_carry_the_casting_factor_too() -> None:
-    from dataclasses import replace
-
     limits = replace(LIMITS, casting_factor=1.25)
     materials = {"cast": METAL, "bar": replace(METAL, cast=False)}
 

@@ -10,6 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from installation import synthetic_car as car
 
+from blockload.case.fasteners import proof_load
 from blockload.errors import CaseError
 from blockload.installation.install import install
 from blockload.margins.faces import face_margins
@@ -135,7 +136,7 @@ def test_springs_all_alike_are_the_rigid_face() -> None:
 
 
 def test_a_soft_stud_takes_less() -> None:
-    """f = k G K⁻¹ W with one stud ten times softer: under pure thrust it carries far less than an equal quarter."""
+    """F = k G K⁻¹ W with one stud ten times softer: under pure thrust it carries far less than an equal quarter."""
     case = car.case()
     rear = np.array([[[1e3, 0.0, 0.0, 0.0, 0.0, 0.0]]])
     loads = car.load_cases(case, rear=rear).faces["front"]
@@ -220,8 +221,6 @@ def test_an_unknown_thread_or_class_is_refused(size, grade) -> None:
 
 def test_the_case_reader_and_the_margins_know_the_same_proof_loads() -> None:
     """Preload in per cent of the proof load must mean the load the margin uses."""
-    from blockload.case.fasteners import proof_load
-
     for size in ("M6", "M8", "M10", "M12", "M16", "M20", "M12x1.25"):
         for grade in ("8.8", "10.9", "12.9"):
             assert fastener(size, grade).proof_load == pytest.approx(proof_load(size, grade, "test"), rel=1e-12)
