@@ -15,6 +15,8 @@ from functools import cache
 from types import MappingProxyType
 from typing import Any, NoReturn
 
+import numpy as np
+
 from .arrays import Floats, frozen
 from .errors import CaseError, nearest
 
@@ -198,16 +200,23 @@ def _numbers(value: Any, kind: Kind, where: str) -> tuple[list[float], Unit | No
     if isinstance(value, bool) or not isinstance(value, (int, float, str, Sequence)):
         raise CaseError(where, f"{value!r} is not a quantity", _form(kind))
     if isinstance(value, (int, float)):
-        return [float(value)], None
+        return [_bare(value)], None
     if not isinstance(value, str):
         if any(isinstance(item, bool) or not isinstance(item, (int, float)) for item in value):
             _refuse_list(value, kind, where)
-        return [float(item) for item in value], None
+        return [_bare(item) for item in value], None
     match = _MANY.fullmatch(value) or _ONE.fullmatch(value)
     if match is None:
         _refuse(value, kind, where)
     numbers = [float(item) for item in match[1].split(",")]
     return numbers, _unit(match[2], value, kind, where)
+
+
+def _bare(value: float) -> float:
+    try:
+        return float(value)
+    except OverflowError:
+        return math.inf
 
 
 def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
@@ -343,6 +352,18 @@ def _count(size: int) -> str:
 
 def _quoted(value: Any) -> str:
     return repr(value if isinstance(value, (str, int, float)) else list(value))
+
+
+def scaled(value: Any, factor: float) -> str:
+    """Return a quantity of the case file, as it would stand there, with its numbers multiplied (six figures)."""
+    match = (_MANY.fullmatch(value) or _ONE.fullmatch(value)) if isinstance(value, str) else None
+    if isinstance(value, str) and match is None:
+        raise CaseError(repr(value), "is no quantity", "one number, or a bracket of numbers, and a unit")
+    numbers = [float(item) for item in match[1].split(",")] if match else np.atleast_1d(value).tolist()
+    texts = ", ".join(f"{number * factor:.6g}" for number in numbers)
+    if match:
+        return f"({texts}) {match[2]}" if "(" in value else f"{texts} {match[2]}".rstrip()
+    return f"[{texts}]" if isinstance(value, list) else texts
 
 
 def show(value: float, unit: str, digits: int = 3) -> str:

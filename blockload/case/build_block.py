@@ -1,4 +1,4 @@
-"""The block's source and names, how it is held, second load paths, limits, and how well numbers are known."""
+"""The block's source and names, how it is held, and second load paths."""
 
 from __future__ import annotations
 
@@ -10,22 +10,19 @@ import numpy as np
 
 from ..arrays import Floats, frozen
 from ..units import UNITS, significant
-from .documents import split_key
 from .fasteners import boss_stiffness
-from .messages import is_key, nearest_key
+from .messages import nearest_key
 from .model import (
     BlockSpec,
     Carried,
     Face,
     Installation,
-    Known,
-    Limits,
     MaterialChoice,
     SecondPath,
 )
 from .notes import Notes, key_of
 from .schema import CaseTable
-from .schema_block import BlockTable, InstallationTable, KnownTable, LimitsTable, MaterialTable
+from .schema_block import BlockTable, InstallationTable, MaterialTable
 
 _PAD_SOURCE = (
     "estimated from the studs: aluminium boss 2.5 d wide, clamped length 3 d unless grip is given "
@@ -215,27 +212,3 @@ def build_paths(table: CaseTable, notes: Notes) -> tuple[SecondPath, ...]:
             )
         )
     return tuple(paths)
-
-
-_FACTORS = ("yield_factor", "rupture_factor", "casting_factor", "separation_factor", "slip_factor", "bolt_factor")
-_OPTIONAL = ("torsion_min", "bending_min", "twist_share", "stud_axial", "stud_shear", "face_moment")
-
-
-def build_limits(table: CaseTable, notes: Notes) -> Limits:
-    """Return factors, with their defaults noted, and the allowables that are given."""
-    given = table.limits
-    factors: dict[str, Any] = {name: notes.take(given, LimitsTable, "limits", name) for name in _FACTORS}
-    factors |= {name: getattr(given, name, None) for name in _OPTIONAL}
-    return Limits(**factors)
-
-
-def build_known(table: CaseTable, notes: Notes) -> dict[str, Known]:
-    """Return how well keys are known, by dotted key."""
-    known = {}
-    for key, item in table.known.items():
-        place = key_of("known", key)
-        if not is_key(split_key(key, notes.where(place))):
-            notes.problem(place, f"{key!r} is not a key of a case file", "a dotted key", nearest_key(key))
-        source = notes.take(item, KnownTable, place, "source")
-        known[key] = Known(key=key, basis=item.basis, source=source or "unsourced", band=item.band)
-    return known

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 import re
 import tomllib
 from collections.abc import Iterable, Mapping
@@ -12,6 +13,8 @@ from typing import Any
 from ..errors import CaseError
 
 Document = dict[str, Any]
+
+_MARK = 271828
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -88,25 +91,26 @@ def split_key(key: str, place: str) -> tuple[str, ...]:
 
     """
     try:
-        tree = tomllib.loads(f"{key} = 0") if "=" not in key and "\n" not in key else {}
+        node: Any = tomllib.loads(f"{key} = {_MARK}") if "\n" not in key else {}
     except tomllib.TOMLDecodeError:
-        tree = {}
+        node = {}
     parts: list[str] = []
-    node: Any = tree
     while isinstance(node, dict) and len(node) == 1:
         name, node = next(iter(node.items()))
         parts.append(name)
-    if not parts:
+    if node != _MARK:
         raise CaseError(place, f"{key!r} is no key", "a dotted key such as bodies.gearbox.mass")
     return tuple(parts)
 
 
 def join_key(parts: Iterable[str | int]) -> str:
     """Return a dotted key, with quotes round parts that need them, as TOML writes it."""
-    return ".".join(
-        str(part) if re.fullmatch(r"[A-Za-z0-9_-]+", str(part)) else '"' + str(part).replace('"', '\\"') + '"'
-        for part in parts
-    )
+    return ".".join(str(part) if re.fullmatch(r"[A-Za-z0-9_-]+", str(part)) else _quoted(str(part)) for part in parts)
+
+
+def _quoted(part: str) -> str:
+    """A TOML basic string is a JSON string, but for the delete character."""
+    return json.dumps(part, ensure_ascii=False).replace("\x7f", "\\u007f")
 
 
 def override(text: str) -> Document:
@@ -119,7 +123,7 @@ def override(text: str) -> Document:
 
     """
     place = f"--set {text}"
-    match = re.match(r"""((?:[^="']|"[^"]*"|'[^']*')+)=(.*)""", text, re.DOTALL)
+    match = re.match(r"""((?:[^="']|"(?:[^"\\]|\\.)*"|'[^']*')+)=(.*)""", text, re.DOTALL)
     if match is None:
         raise CaseError(place, "has no '='", "KEY=VALUE", "write for example --set bodies.gearbox.mass='130 kg'")
     parts = split_key(match[1].strip(), place)

@@ -177,6 +177,12 @@ def _is_field(table: type[Table], name: str) -> bool:
     return _field(table, name) is not None
 
 
+def kind_of(parts: Sequence[str]) -> str | None:
+    """Return the kind of quantity a key holds; None for words and tables."""
+    info = _info(parts)
+    return meta_of(info).kind if info is not None else None
+
+
 def nearest_key(word: str, known: Sequence[str] | Any = None) -> str:
     """Return "Did you mean ...?" for the nearest of some words, or of all keys of the schema."""
     return nearest(word, known_keys() if known is None else known)

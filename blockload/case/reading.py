@@ -12,9 +12,10 @@ from pydantic import ValidationError
 
 from ..errors import CaseError
 from .build_axles import build_axles
-from .build_block import build_block, build_installation, build_known, build_limits, build_paths
+from .build_block import build_block, build_installation, build_paths
 from .build_bodies import build_bodies, total_mass
 from .build_faces import build_faces
+from .build_limits import build_known, build_limits
 from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_engine, build_manoeuvres
 from .documents import Document, Layer, layers, literal, merged, nested, override, split_key
 from .frame import Frame, read_frame, to_car
@@ -55,7 +56,9 @@ def read(path: str | Path, overrides: Sequence[str] = ()) -> Case:
     document.pop("extends", None)
     outermost = read_frame(found[0].document, path)
     for text in overrides:
-        document = merged(document, _in_car(_fitted(document, override(text)), outermost))
+        change = override(text)
+        _refuse_structure(change, f"--set {text}")
+        document = merged(document, _in_car(_fitted(document, change), outermost))
     return _build(document, path, digest.hexdigest(), tuple(overrides), found)
 
 
@@ -74,9 +77,17 @@ def replaced(case: Case, key: str, text: str) -> Case:
     """
     place = f"{case.path}, {key}"
     change = nested(split_key(key, place), literal(text))
+    _refuse_structure(change, place)
     frame = read_frame(case.document, case.path)
     document = merged(case.document, _in_car(_fitted(case.document, change), frame))
     return _build(document, case.path, case.sha256, (*case.overrides, f"{key}={text}"), ())
+
+
+def _refuse_structure(change: Mapping[str, Any], place: str) -> None:
+    for key in ("extends", "frame"):
+        if key in change:
+            remedy = "write it in a file; a small one that extends this one will do"
+            raise CaseError(place, f"{key} says how files are read and cannot be set here", "any other key", remedy)
 
 
 def _in_car(document: Mapping[str, Any], frame: Frame | None) -> Document:
@@ -199,7 +210,7 @@ def _assembled(
         paths=build_paths(table, notes),
         limits=build_limits(table, notes),
         engine_maker_consent=notes.take(table.engine, EngineTable, "engine", "maker_consent"),
-        known=build_known(table, notes),
+        known=build_known(table, document, notes),
         concept_grade=table.concept.grade if table.concept is not None else None,
         bounds=(),
         defaults=(),

@@ -14,6 +14,7 @@ from hypothesis import strategies as st
 from blockload.case.documents import join_key, literal, merged, nested, override, split_key
 from blockload.case.model import Case
 from blockload.case.reading import read, replaced
+from blockload.errors import CaseError
 
 DEMO = Path(__file__).parents[2] / "cases" / "demo.toml"
 
@@ -138,7 +139,7 @@ def test_a_force_at_a_speed_is_an_area(tmp_path: Path) -> None:
     assert read_text(tmp_path, text).devices[1].downforce_area == pytest.approx(1.4)
 
 
-NAME = st.text(min_size=1, max_size=8).filter(lambda text: text.isprintable() and not set(text) & set('"\\='))
+NAME = st.text(st.characters(exclude_categories=("Cs",)), min_size=1, max_size=8)
 
 
 @given(st.lists(NAME, min_size=1, max_size=4))
@@ -151,6 +152,38 @@ def test_keys_read_back(parts: list[str]) -> None:
 def test_overrides_read_back(parts: list[str], number: float) -> None:
     """KEY=VALUE of any key and number is the document that nests them."""
     assert override(f"{join_key(parts)}={number!r}") == nested(parts, number)
+
+
+def test_how_files_are_read_cannot_be_set(tmp_path: Path) -> None:
+    """Extends and frame belong to files; set from outside they would be ignored, so they are refused."""
+    for text in ("extends=other.toml", "frame.axes=x rearward, y right, z up"):
+        with pytest.raises(CaseError, match="cannot be set"):
+            read_text(tmp_path, WHOLE, (text,))
+
+
+@pytest.mark.parametrize(
+    ("key", "low", "high"),
+    [
+        ("bodies.engine.mass", "171 kg", "209 kg"),
+        ("axles.front.roll_stiffness", "234 kNm/rad", "286 kNm/rad"),
+        ("bodies.engine.inertia", "(8.1, 9.9, 10.8) kg*m^2", "(9.9, 12.1, 13.2) kg*m^2"),
+        ("faces.front.stud.preload", "54 kN", "66 kN"),
+    ],
+)
+def test_a_stated_band_is_run_at_both_ends(tmp_path: Path, key: str, low: str, high: str) -> None:
+    """A number known within a band becomes a bound that leaves the middle where it is."""
+    case = read_text(tmp_path, WHOLE + f'[known."{key}"]\nbasis = "guess"\nband = "10 %"\n')
+    (bound,) = case.bounds
+
+    assert (bound.low, bound.high) == (low, high)
+    assert case.known[key].band == pytest.approx(0.1)
+    assert replaced(case, key, bound.low).title == replaced(case, key, bound.high).title == case.title
+
+
+def test_a_place_has_no_band(tmp_path: Path) -> None:
+    """A share of a place means nothing."""
+    with pytest.raises(CaseError, match="means nothing"):
+        read_text(tmp_path, WHOLE + '[known."bodies.engine.cg"]\nbasis = "guess"\nband = "10 %"\n')
 
 
 def test_merging_changes_neither() -> None:

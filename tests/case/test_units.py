@@ -138,7 +138,9 @@ def test_refuses_with_the_corrected_text(text: str, kind: str, word: str, offer:
     assert caught.value.allowed
 
 
-@pytest.mark.parametrize("value", [True, None, {}, [1, "2 m", 3], [True, 1, 2], float("nan"), float("inf"), b"1 m"])
+@pytest.mark.parametrize(
+    "value", [True, None, {}, [1, "2 m", 3], [True, 1, 2], float("nan"), float("inf"), 10**400, b"1 m"]
+)
 def test_refuses_what_is_no_quantity(value: object) -> None:
     """Switches, tables, mixed lists and non-finite numbers are no quantities."""
     with pytest.raises(CaseError):
