@@ -32,10 +32,10 @@ def dissect(graph: Any, points: Floats, leaf: int = LEAF) -> list[Part]:
     stack: list[tuple[Any, Ints, int]] = [(graph.tocsr(), np.arange(len(points)), -1)]
     while stack:
         links, nodes, parent = stack.pop()
-        if len(nodes) <= leaf:
+        side = _best_cut(links, points[nodes]) if len(nodes) > leaf else None
+        if side is None:
             parts.append(Part(nodes, parent))
             continue
-        side = _best_cut(links, points[nodes])
         parts.append(Part(nodes[side == 2], parent))
         here = len(parts) - 1
         for half in (0, 1):
@@ -46,10 +46,10 @@ def dissect(graph: Any, points: Floats, leaf: int = LEAF) -> list[Part]:
     return [Part(part.nodes, last - part.parent if part.parent >= 0 else -1) for part in reversed(parts)]
 
 
-def _best_cut(links: Any, points: Floats) -> Ints:
-    """Side of every node (0, 1, or 2 for the separator), the best of a few directions."""
+def _best_cut(links: Any, points: Floats) -> Ints | None:
+    """Side of every node (0, 1, or 2 for the separator), the best of a few directions; None where none cuts."""
     spread = np.linalg.eigh(np.cov(points.T))[1].T
-    best, cost = np.zeros(len(points), dtype=np.int64), np.inf
+    best, cost = None, np.inf
     for direction in np.vstack([_TURNS, spread[-1:]]):
         along = points @ direction
         if np.ptp(along) == 0:

@@ -21,6 +21,7 @@ from ..errors import BlockError
 Bools = NDArray[np.bool_]
 EDGES = ((0, 1), (1, 2), (0, 2), (0, 3), (1, 3), (2, 3))
 STRAIGHT_TOLERANCE = 1e-12
+CEILING = 128 * 2**20
 _CORNER_SLOPES = np.array([[-1.0, -1.0, -1.0], [1.0, 0.0, 0.0], [0.0, 1.0, 0.0], [0.0, 0.0, 1.0]])
 
 
@@ -123,8 +124,8 @@ def straight(elements: Elements) -> Bools:
     return result
 
 
-def chunks(count: int, bytes_each: int, ceiling: int = 128 * 2**20) -> Iterator[slice]:
-    """Cut a range into slices whose work arrays stay below `ceiling` bytes."""
-    step = max(1, ceiling // max(1, bytes_each))
+def chunks(count: int, bytes_each: int, ceiling: int | None = None) -> Iterator[slice]:
+    """Cut a range into slices whose work arrays stay below `ceiling` bytes (CEILING by default)."""
+    step = max(1, (ceiling or CEILING) // max(1, bytes_each))
     for start in range(0, count, step):
         yield slice(start, min(start + step, count))

@@ -217,15 +217,21 @@ def _library(
         inertia=frozen(body.inertia),
         flexibility=frozen(flexibility),
         thermal_motion=frozen(thermal),
-        motion=motion,
+        motion=_locked(motion),
         surface_nodes=frozen(surface.nodes, np.int64),
         surface_points=frozen(block.mesh.doflocs.T[surface.nodes]),
         surface_triangles=frozen(surface.triangles, np.int64),
         triangle_volume=frozen(surface.triangle_volume, np.int64),
         entry_node=frozen(surface.entry_node, np.int64),
         entry_volume=frozen(surface.entry_volume, np.int64),
-        stress=stress,
+        stress=_locked(stress),
         checks=checks,
         solver=solver,
         from_cache=False,
     )
+
+
+def _locked(array: Floats) -> Floats:
+    """The same large array, no copy, read-only from now on."""
+    array.flags.writeable = False
+    return array

@@ -85,8 +85,9 @@ def _scatter(elements: Elements, values: Floats) -> Any:
     )
     blocks = (gather @ values.reshape(-1, 9)).reshape(-1, 3, 3)
     rows, columns = np.divmod(keys[order[starts]], count)
-    upper = _block_rows(rows, columns, blocks, count)
     strict = rows < columns
+    blocks[~strict] = (blocks[~strict] + blocks[~strict].swapaxes(1, 2)) / 2
+    upper = _block_rows(rows, columns, blocks, count)
     lower = _block_rows(columns[strict], rows[strict], blocks[strict].swapaxes(1, 2), count)
     full = (upper + lower).tocsr()
     full.sort_indices()

@@ -90,9 +90,13 @@ def fingerprint(block: Block, solver: str) -> str:
         add("facets", np.asarray(attachment.facets, dtype="<i8"))
         add("centroid", np.asarray(attachment.centroid, dtype="<f8"))
     add("solver", solver)
-    for path in sorted(Path(__file__).parent.glob("*.py")):
-        add(path.name, path.read_text(encoding="utf-8"))
+    for name, text in _source_text():
+        add(name, text)
     return digest.hexdigest()
+
+
+def _source_text() -> list[tuple[str, str]]:
+    return [(path.name, path.read_text(encoding="utf-8")) for path in sorted(Path(__file__).parent.glob("*.py"))]
 
 
 def save(folder: Path, library: Library) -> Path:
