@@ -70,8 +70,9 @@ def test_a_pad_without_a_stiffness_is_refused(entries) -> None:
 
 
 def test_a_rigid_block_on_equal_pads_has_the_stud_forces_of_the_rigid_face() -> None:
-    """The rear face, whose wrench is given: bolt-group formula a = N/n + M d/Σd², s = V/n + T r/Σr² (Shigley, bolted
-    joints in shear and eccentric loading). A pad's own bending takes a little of the moments, so it is made tiny.
+    """The rear face, whose wrench is given: bolt-group rule a = N/n + M d/Σd², s = V/n + T r/Σr² (Shigley, ch. 8).
+
+    A pad's own bending takes a little of the moments, so it is made tiny.
     """
     case = car.case(pad_stiffness=(("given", K_N, K_N),))
     block = car.block(case)
@@ -93,8 +94,9 @@ def with_points_for_pads(block):
 
 
 def test_a_second_path_shares_with_the_pads_like_two_springs() -> None:
-    """A strut along x at the centroid of the rear pads, beside pads that are four springs: k_s/(k_s + 4 k_n) of the
-    thrust goes through it (two springs side by side, opened by hand).
+    """Two springs side by side, opened by hand: the strut takes k_s/(k_s + k) of the thrust.
+
+    k is that of the four front and four rear pads in series between tub and gearbox, 4 k_n / 2.
     """
     stiffness = 5e8
     rear = {"TL": (0.2, 0.4), "TR": (-0.2, 0.4), "BL": (0.2, 0.1), "BR": (-0.2, 0.1)}
