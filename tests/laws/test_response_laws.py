@@ -77,6 +77,9 @@ def test_the_field_is_the_same_wherever_the_six_auxiliary_constraints_sit(solved
     for name in ("motion", "stress", "flexibility"):
         first, second = np.asarray(getattr(library, name)), np.asarray(getattr(other, name))
         peak = np.abs(first).max(axis=tuple(range(first.ndim - 1)))
+        if name == "stress":  # a free block heated evenly has none: compare with the stress of a held one
+            heat = slice(len(library.flexibility), None)
+            peak[heat] = np.maximum(peak[heat], 1e6)
         assert (np.abs(first - second) / peak).max() < 1e-9, name
 
 

@@ -95,7 +95,7 @@ def test_pulling_the_block_gives_its_mean_stress() -> None:
     section = section_stress(block, library, weights, -0.3)
 
     assert section.force[0] == pytest.approx(4000, rel=5e-3)
-    assert abs(section.about_y[0]) < 0.005 * 4000 * 0.1
+    assert abs(section.about_y[0]) < 0.005 * 4000 * 0.3
 
 
 @pytest.mark.parametrize("x", [-0.599, -0.5, -0.41234, -1e-6])
@@ -115,5 +115,5 @@ def test_a_plane_beside_the_block_is_refused(cut) -> None:
     library = solve(block)
     more = (np.zeros(3),) if cut is section_cut else ()
 
-    with pytest.raises(BlockError, match="0.5 m"):
+    with pytest.raises(BlockError, match=r"0\.5 m"):
         cut(block, library, np.zeros(library.unit_count), 0.5, *more)

@@ -116,7 +116,7 @@ def changed(block: Block, what: str) -> tuple[Block, str]:
     solver = "fronts"
     if what == "material":
         stiffer = material(properties=(72e9, 0.33, 2700.0, 21e-6))
-        return replace(block, materials={name: stiffer for name in block.volumes}), solver
+        return replace(block, materials=dict.fromkeys(block.volumes, stiffer)), solver
     if what == "attachments":
         return replace(block, attachments=block.attachments[:-1]), solver
     if what == "facets":
