@@ -2,7 +2,8 @@
 
 `ruled out`: a margin fails at both ends of its band and its number may be believed. A stress on a sharp re-entrant
 edge or within a pad diameter of an attachment may not: it alone cannot rule a block out, and it cannot show one
-either. A margin in a load case that lifts a wheel cannot rule out, for that is not a state of the car.
+either. A margin in a load case that lifts a wheel cannot rule out, for that is not a state of the car; nor one in a
+load case whose aero map was read beyond its grid.
 `not shown`: a check fails, a band crosses zero, a failing number is not believed, a criterion or base state is
 missing, a guess may govern, or there is no solid block yet. `shown within scope`: none of these.
 """
@@ -17,7 +18,7 @@ from ..case.model import Case, Check, MaterialChoice
 from ..installation.model import PadLoads
 from ..response.model import Library
 from .faces import face_margins
-from .load_checks import WHEEL_CHECK, lifted_cases, load_checks
+from .load_checks import WHEEL_CHECK, aero_doubts, cases_at_map_edge, lifted_cases, load_checks
 from .model import Margin, Margins, Verdict
 from .requirements import requirements
 from .scope import not_judged
@@ -99,11 +100,12 @@ def verdict(case: Case, cases: LoadCases, margins: Sequence[Margin], checks: Seq
     lifted = lifted_cases(cases)
     failed = [item for item in (*case.checks, *checks) if not item.ok]
     broken = [item for item in failed if item.name != WHEEL_CHECK]
-    ruling = [item for item in loaded if rules_out(item, lifted)]
+    edge = cases_at_map_edge(cases)
+    ruling = [item for item in loaded if rules_out(item, (*lifted, *edge))]
     if ruling and not broken:
         word, reasons = "ruled out", tuple(_failure(item) for item in sorted(ruling, key=_lowest_first)[:3])
     else:
-        reasons = tuple(_doubts(case, loaded, failed, lifted, level=level))
+        reasons = (*_doubts(case, loaded, failed, lifted, level=level), *aero_doubts(cases))
         word = "not shown" if reasons else "shown within scope"
     return Verdict(
         word=word,

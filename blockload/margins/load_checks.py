@@ -31,6 +31,21 @@ def lifted_cases(cases: LoadCases) -> tuple[str, ...]:
     return tuple(name for name, lifted in zip(cases.names, cases.wheel_lift, strict=False) if lifted)
 
 
+def cases_at_map_edge(cases: LoadCases) -> tuple[str, ...]:
+    """Return the load cases that read an aero map beyond its grid, where its edge was used."""
+    return tuple(name for name, mark in zip(cases.names, cases.outside_map, strict=False) if mark)
+
+
+def aero_doubts(cases: LoadCases) -> Iterator[str]:
+    """Yield why nothing is shown while the air is not known well enough."""
+    edge = cases_at_map_edge(cases)
+    if edge:
+        yield f"an aero map was read beyond its grid, at its edge, in {', '.join(edge)}"
+    if cases.aero_bounds is not None:
+        count = len(cases.aero_bounds.splits)
+        yield f"only totals of the aero are known: each band spans {count} extreme splits of it"
+
+
 def _sign(cases: LoadCases) -> Iterator[Check]:
     """The trade's sign: where the front face sags most, its upper studs are pressed and its lower ones pulled."""
     face = cases.faces["front"]
