@@ -116,6 +116,7 @@ _DIMENSIONS: Mapping[str, tuple[Dimension, str, Mapping[str, float]]] = {
     "time": ((0, 0, 1, 0, 0), "s", {"s": 1, "ms": 1e-3, "min": 60, "h": 3600}),
     "temperature": ((0, 0, 0, 1, 0), "K", {"K": 1, "degC": 1, "degF": 5 / 9}),
     "thermal_expansion": ((0, 0, 0, -1, 0), "1/K", {"1/K": 1, "um/m/K": 1e-6}),
+    "per_force": ((-1, -1, 2, 0, 0), "1/N", {"1/N": 1, "1/kN": 1e-3}),
     "ratio": (_NONE, "", {"": 1, "%": 1e-2, "1": 1}),
 }
 _OFFSETS = {"degC": 273.15, "degF": 459.67 * 5 / 9}

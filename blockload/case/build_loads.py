@@ -11,10 +11,11 @@ import numpy as np
 from ..arrays import Floats, frozen
 from ..errors import CaseError
 from ..units import parse, show
-from .model import AeroMap, AeroTotal, Axle, Check, Device, Drive, Engine, Manoeuvre
+from .build_situations import brakes, has_situations
+from .model import AeroMap, AeroTotal, Axle, Check, Device, Drive, Engine, Manoeuvre, Tyres
 from .notes import Notes, key_of
 from .schema import CaseTable
-from .schema_car import DriveTable, EngineTable
+from .schema_car import DriveTable, EngineTable, TyresTable
 from .schema_loads import DeviceTable, ManoeuvreTable
 
 FORCE_TOLERANCE = 0.005
@@ -114,7 +115,7 @@ def _compare(
                 "aero_total.drag", found, "agreement within 0.5 %", "look for a drag counted twice or left out"
             )
     front, rear = axles["front"].x, axles["rear"].x
-    if lift.sum() == 0.0:
+    if lift.sum() == 0.0 or front <= rear:
         return
     without = float(lift @ (at[:, 0] - rear) / (front - rear) / lift.sum())
     including = without - float(drag @ at[:, 2] / (front - rear) / lift.sum())
@@ -138,7 +139,7 @@ def _check(name: str, value: float, limit: float, note: str, notes: Notes) -> No
 def build_drive(table: CaseTable, notes: Notes) -> Drive:
     """Return how the car is driven and braked."""
     given = table.drive
-    braked = any(item.drive == "brake" for item in table.manoeuvres.values())
+    braked = brakes(table)
     share = given.brake_front_share if given is not None else None
     if share is None:
         share = notes.take(given, DriveTable, "drive", "brake_front_share") if braked else 0.58
@@ -152,6 +153,22 @@ def build_drive(table: CaseTable, notes: Notes) -> Drive:
         brake_front_share=share,
         crank_direction=direction,
         crank_inertia=given.crank_inertia if given is not None else None,
+        clutch_capacity=given.clutch_capacity if given is not None else None,
+    )
+
+
+def build_tyres(given: TyresTable | None, notes: Notes) -> Tyres:
+    """Return the tyres' friction; unknown where the case says nothing."""
+    if given is None:
+        return Tyres()
+    if given.load_sensitivity and given.reference_load is None:
+        remedy = "add the wheel load at which mu_x and mu_y were measured"
+        notes.problem("tyres.reference_load", "not given, with a load_sensitivity", "a wheel load", remedy)
+    return Tyres(
+        mu_x=given.mu_x,
+        mu_y=given.mu_y,
+        load_sensitivity=given.load_sensitivity or 0.0,
+        reference_load=given.reference_load,
     )
 
 
@@ -194,7 +211,7 @@ def _torque_curve(given: Any, notes: Notes) -> Floats | None:
 
 def build_manoeuvres(table: CaseTable, drive: Drive, notes: Notes) -> tuple[Manoeuvre, ...]:
     """Return the manoeuvres in file order."""
-    if not table.manoeuvres:
+    if not table.manoeuvres and not has_situations(table):
         remedy = 'add for example [manoeuvres.v_max] with speed = "75 m/s"'
         notes.problem("manoeuvres", "no manoeuvre is given", "at least one [manoeuvres.NAME]", remedy)
     return tuple(_manoeuvre(name, item, drive, notes) for name, item in table.manoeuvres.items())

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import hashlib
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from pathlib import Path
 from typing import Any
@@ -16,11 +16,20 @@ from .build_block import build_block, build_installation, build_paths
 from .build_bodies import build_bodies, total_mass
 from .build_faces import build_faces
 from .build_limits import build_known, build_limits
-from .build_loads import build_aero_split, build_aero_total, build_devices, build_drive, build_engine, build_manoeuvres
+from .build_loads import (
+    build_aero_split,
+    build_aero_total,
+    build_devices,
+    build_drive,
+    build_engine,
+    build_manoeuvres,
+    build_tyres,
+)
+from .build_situations import build_catalogue, build_envelope, build_performance, build_points, turns
 from .documents import Document, Layer, layers, literal, merged, nested, override, split_key
 from .frame import Frame, read_frame, to_car
 from .messages import refusals, together
-from .model import Case
+from .model import FACES, Case
 from .notes import Notes
 from .plausible import check_car
 from .schema import CaseTable
@@ -116,16 +125,28 @@ def _rebased(layer: Layer, folder: Path) -> Document:
 
 def _fitted(document: Mapping[str, Any], change: Mapping[str, Any]) -> Document:
     """Return a change that fits the document where a bare text stands for a table, as a stud's (y, z) does."""
-    studs = change.get("faces", {})
     result = dict(change)
-    if not isinstance(studs, Mapping):
-        return result
-    for face, item in studs.items():
-        for name, value in (item.get("studs", {}) if isinstance(item, Mapping) else {}).items():
-            given = document.get("faces", {}).get(face, {}).get("studs", {}).get(name)
-            if isinstance(value, Mapping) and given is not None and not isinstance(given, Mapping):
-                result = merged(result, nested(("faces", face, "studs", name), {"at": given, **value}))
+    for face, name, value in _stud_changes(change):
+        given = _at(document, ("faces", face, "studs", name))
+        if given is not None and not isinstance(given, Mapping):
+            result = merged(result, nested(("faces", face, "studs", name), {"at": given, **value}))
     return result
+
+
+def _stud_changes(change: Mapping[str, Any]) -> Iterator[tuple[str, str, Mapping[str, Any]]]:
+    """Yield face, stud and table for every stud that a change describes by a table."""
+    for face in FACES:
+        studs = _at(change, ("faces", face, "studs"))
+        for name, value in studs.items() if isinstance(studs, Mapping) else ():
+            if isinstance(value, Mapping):
+                yield face, name, value
+
+
+def _at(document: Any, parts: Sequence[str]) -> Any:
+    """Return what stands at a dotted key, None where nothing does."""
+    for part in parts:
+        document = document.get(part) if isinstance(document, Mapping) else None
+    return document
 
 
 def _locator(path: Path, overrides: Sequence[str], found: Sequence[Layer]) -> Callable[[str], str]:
@@ -134,22 +155,14 @@ def _locator(path: Path, overrides: Sequence[str], found: Sequence[Layer]) -> Ca
     def where(key: str) -> str:
         parts = split_key(key, str(path)) if key else ()
         for text in reversed(overrides):
-            if _holds(override(text), parts):
+            if _at(override(text), parts) is not None:
                 return f"--set {text}"
         for layer in found:
-            if _holds(layer.document, parts):
+            if _at(layer.document, parts) is not None:
                 return f"{layer.path}, {key}"
         return f"{path}, {key}" if key else str(path)
 
     return where
-
-
-def _holds(document: Any, parts: Sequence[str]) -> bool:
-    for part in parts:
-        if not isinstance(document, Mapping) or part not in document:
-            return False
-        document = document[part]
-    return True
 
 
 def _build(document: Document, path: Path, sha256: str, overrides: tuple[str, ...], found: Sequence[Layer]) -> Case:
@@ -158,8 +171,7 @@ def _build(document: Document, path: Path, sha256: str, overrides: tuple[str, ..
         table = CaseTable.model_validate(document)
     except ValidationError as error:
         raise together(refusals(error, where), str(path)) from None
-    turning = any(item.extra_wheel_force is not None for item in table.manoeuvres.values())
-    notes = Notes(where=where, turning=turning)
+    notes = Notes(where=where, turning=turns(table))
     case = _assembled(table, document, path, sha256, overrides, notes)
     if notes.problems or case is None:
         raise together(notes.problems, str(path))
@@ -215,6 +227,11 @@ def _assembled(
         bounds=(),
         defaults=(),
         checks=(),
+        tyres=build_tyres(table.tyres, notes),
+        points=build_points(table),
+        performance=build_performance(table.performance, notes),
+        catalogue=build_catalogue(table, notes),
+        envelope=build_envelope(table.envelope, notes),
     )
     return _noted(case, notes)
 

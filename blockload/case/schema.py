@@ -8,10 +8,11 @@ from typing import Any, Literal
 from .schema_block import BlockTable, ConceptTable, FacesTable, InstallationTable, KnownTable, LimitsTable, PathTable
 from .schema_car import AxlesTable, BodiesTable, CarTable, DriveTable, EngineTable, FrameTable, TyresTable
 from .schema_loads import AeroSplitTable, AeroTotalTable, DeviceTable, ManoeuvreTable
+from .schema_situations import CatalogueTable, EnvelopeTable, PerformanceTable, PointsTable
 from .tables import Table, quantity, table, tables, words
 
 FORMAT = "blockload.case/1"
-LATER = ("points", "performance", "catalogue", "laps", "gauges", "heat", "duty", "scatter", "measured", "accepted")
+LATER = ("laps", "gauges", "heat", "duty", "scatter", "measured", "accepted")
 """Tables kept as they stand in the file."""
 
 
@@ -57,9 +58,10 @@ class CaseTable(Table):
     limits: LimitsTable | None = table("factors and allowables")
     known: dict[str, KnownTable] = tables("how well a key is known, by its full dotted name")
     concept: ConceptTable | None = table("what is chosen before there is a block")
-    points: Any = words("hoop, jacks, towing, hoist (kept for later use)")
-    performance: Any = words("power and grip for an envelope of manoeuvres (kept for later use)")
-    catalogue: Any = words("groups of standard manoeuvres (kept for later use)")
+    points: PointsTable | None = table("places the standard situations ask for")
+    performance: PerformanceTable | None = table("what the car can do")
+    catalogue: CatalogueTable | None = table("groups of standard situations")
+    envelope: EnvelopeTable | None = table("boundary of what grip and power allow, every vertex a load case")
     laps: Any = words("recorded or simulated laps (kept for later use)")
     gauges: Any = words("named places whose motion is reported (kept for later use)")
     heat: Any = words("temperatures (kept for later use)")

@@ -265,9 +265,17 @@ class TyresTable(Table):
 
     mu_x: float | None = quantity("ratio", "peak friction lengthwise", example="1.6", band=("0.05", "3"))
     mu_y: float | None = quantity("ratio", "peak friction sideways", example="1.6", band=("0.05", "3"))
-    load_sensitivity: Any = words("loss of friction with load (kept for later use)")
+    load_sensitivity: float | None = quantity(
+        "per_force",
+        "loss of friction per newton of wheel load, as a share of the friction at the reference load",
+        example='"0.03 1/kN"',
+        band=("0 1/kN", "0.3 1/kN"),
+    )
     reference_load: float | None = quantity(
-        "force", "wheel load at which mu_x and mu_y hold", example='"4 kN"', band=("0.1 kN", "50 kN")
+        "force",
+        "wheel load at which mu_x and mu_y hold; asked with load_sensitivity",
+        example='"4 kN"',
+        band=("0.1 kN", "50 kN"),
     )
 
 
@@ -297,6 +305,9 @@ class DriveTable(Table):
         "crank, flywheel and clutch about the crank axis; asked with crank_acceleration",
         example='"0.05 kg*m^2"',
         band=("0.0005 kg*m^2", "2 kg*m^2"),
+    )
+    clutch_capacity: float | None = quantity(
+        "moment", "torque at which the clutch slips", example='"800 Nm"', band=("20 Nm", "5000 Nm")
     )
 
 

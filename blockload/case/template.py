@@ -38,6 +38,12 @@ _NAMES = {
     "paths": "strut_left",
     "known": "bodies.engine.mass",
     "block.carried": "plenum",
+    "points.jacks": "rear",
+    "points.towing": "front",
+    "points.hoist": "front_left",
+    "points.trolley": "front",
+    "catalogue.factors": "kerb",
+    "catalogue.forces": "landing",
 }
 
 _NAMED = {
