@@ -35,7 +35,7 @@ Overrides = Annotated[
     list[str] | None,
     typer.Option("--set", metavar="KEY=VALUE", help="Lay one key over the case file; may be repeated."),
 ]
-Solver = Annotated[str, typer.Option(help="Direct solver: auto, scipy, ngsolve or pypardiso.")]
+Solver = Annotated[str, typer.Option(help="Direct solver: auto, fronts, scipy, ngsolve or pypardiso.")]
 
 
 @app.command()
@@ -146,10 +146,11 @@ def cache(
     from .response import store
 
     if drop is not None:
-        typer.echo(f"dropped: {store.drop(drop)}")
+        for entry in store.drop(drop):
+            typer.echo(f"dropped {entry.key[:16]}")
     entries = store.list_entries()
     for entry in entries:
-        typer.echo(f"{entry.key}  {entry.size / 1e6:9.1f} MB  {entry.path}")
+        typer.echo(f"{entry.key[:16]}  {entry.size / 1e6:9.1f} MB  {entry.path.parent}")
     if not entries:
         typer.echo("the cache is empty")
 
@@ -163,7 +164,9 @@ def verify(
 
     checks = verify_run(run)
     for item in checks:
-        typer.echo(f"{'ok  ' if item.ok else 'FAIL'}  {item.name}: {item.value:.3g} (limit {item.limit:.3g}) {item.note}")
+        typer.echo(
+            f"{'ok  ' if item.ok else 'FAIL'}  {item.name}: {item.value:.3g} (limit {item.limit:.3g}) {item.note}"
+        )
     raise typer.Exit(0 if all(item.ok for item in checks) else 1)
 
 

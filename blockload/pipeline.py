@@ -110,9 +110,7 @@ def check(
     )
 
 
-def _respond(
-    case: Case, *, solver: str, cache: Path | None, progress: Progress
-) -> tuple[Block | None, Library | None]:
+def _respond(case: Case, *, solver: str, cache: Path | None, progress: Progress) -> tuple[Block | None, Library | None]:
     if case.block is None:
         return None, None
     from .block.building import build
@@ -168,9 +166,7 @@ def _with_movements(
 def _movement(case: Case, bound: Bound, block: Block | None, library: Library | None) -> Movement:
     from .margins.model import Movement
 
-    low, high = (
-        _judge(other, balance(other), block, library)[1].verdict.lowest_margin for other in _ends(case, bound)
-    )
+    low, high = (_judge(other, balance(other), block, library)[1].verdict.lowest_margin for other in _ends(case, bound))
     return Movement(key=bound.key, low=bound.low, high=bound.high, margin_low=low, margin_high=high)
 
 
@@ -202,7 +198,7 @@ def environment() -> dict[str, str]:
             found[package] = version(package)
         except PackageNotFoundError:
             found[package] = "not installed"
-    found["solvers"] = ", ".join(factor.available())
+    found["solvers"] = ", ".join(name for name in factor.SOLVERS if factor.installed(name))
     found["cores"] = str(os.cpu_count())
-    found["cache"] = str(store.folder())
+    found["cache"] = str(store.cache_folder())
     return found

@@ -103,14 +103,15 @@ def material(choice: MaterialChoice) -> Material:
 
 
 def grades_table() -> GradesTable:
-    """Return the list for printing: one row per grade, each with its sources."""
-    columns = ("grade", "alloy", "process", "temper", "Rm", "Rp0.2", "A %", "in casting", "E", "ν", "ρ", "α")
+    """Return the list for printing: one row per grade; its sources are numbered in the note."""
+    shipped = tuple(grades().values())
+    sources = list(dict.fromkeys(text for g in shipped for text in (g.source, g.physical_source, g.knock_down_source)))
+    hot = dict.fromkeys(g.hot.source for g in shipped if g.hot is not None)
+    number = {text: str(index) for index, text in enumerate(sources, start=1)}
     rows = tuple(
         (
             g.name,
-            g.alloy,
-            g.process,
-            g.temper,
+            g.process if g.process.endswith(g.temper) else f"{g.process}, {g.temper}",
             f"{g.tensile_strength / 1e6:.0f}",
             f"{g.yield_strength / 1e6:.0f}",
             f"{g.elongation:g}",
@@ -119,16 +120,20 @@ def grades_table() -> GradesTable:
             f"{g.poissons_ratio:g}",
             f"{g.density:.0f}",
             f"{g.thermal_expansion * 1e6:g}",
-            g.source,
+            " ".join(number[text] for text in (g.source, g.physical_source, g.knock_down_source)),
         )
-        for g in grades().values()
+        for g in shipped
     )
-    sources = dict.fromkeys(text for g in grades().values() for text in (g.physical_source, g.knock_down_source))
-    hot = dict.fromkeys(g.hot.source for g in grades().values() if g.hot is not None)
-    note = "MPa, GPa, kg/m³, 1e-6/K; bar minima at 20 °C; `in casting`: share of the bar's strength.\n" + "\n".join(
-        (*sources, *(f"hot strength of AlSi7Mg grades: {text}" for text in hot))
+    note = "\n".join(
+        (
+            "Rm, Rp0.2 in MPa: minima of a separately cast bar at 20 °C; cast: share of that allowed in the casting;",
+            "E in GPa, ν, ρ in kg/m³, α in 1e-6/K. Sources of strength, of physical values, of the casting's share:",
+            *(f"  {index}  {text}" for text, index in number.items()),
+            *(f"Hot strength of the AlSi7Mg grades: {text}" for text in hot),
+        )
     )
-    return GradesTable(title="Grades", columns=(*columns, "source of strengths"), rows=rows, note=note)
+    columns = ("grade", "process, temper", "Rm", "Rp0.2", "A %", "cast", "E", "ν", "ρ", "α", "sources")
+    return GradesTable(title="Grades", columns=columns, rows=rows, note=note)
 
 
 def _graded(grade: Grade, temperature: float | None, where: str) -> Material:

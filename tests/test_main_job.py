@@ -1,0 +1,188 @@
+"""The main job on the demo car: from its figures to a verdict, with everything that must hold on the way."""
+
+from __future__ import annotations
+
+import warnings
+from dataclasses import replace
+from pathlib import Path
+
+import demo
+import numpy as np
+import pytest
+
+from blockload.block.building import build
+from blockload.car.balance import balance
+from blockload.car.model import SECTION
+from blockload.case.reading import read
+from blockload.errors import BlockError, CaseError
+from blockload.installation.install import install
+from blockload.margins.judging import judge
+from blockload.response.cuts import section_stress
+
+STAMP = "chassis load only: no assembly, gas or heat"
+
+
+def test_the_demo_is_not_shown_only_because_base_states_are_missing() -> None:
+    verdict = demo.run().margins.verdict
+
+    assert (verdict.word, verdict.level) == ("not shown", "solid")
+    assert STAMP in verdict.reasons
+    assert not [reason for reason in verdict.reasons if reason.startswith(("check failed", "fails", "band crosses"))]
+    assert verdict.lowest_margin is not None
+    assert verdict.lowest_margin > 0.0
+
+
+@pytest.mark.slow
+def test_the_thin_block_is_ruled_out() -> None:
+    verdict = demo.run("demo-thin").margins.verdict
+
+    assert verdict.word == "ruled out"
+    assert verdict.lowest_margin is not None
+    assert verdict.lowest_margin < 0.0
+
+
+def test_every_check_of_the_demo_passes() -> None:
+    run = demo.run()
+
+    assert [item.name for item in (*run.case.checks, *run.margins.checks) if not item.ok] == []
+
+
+def test_every_solid_margin_carries_the_stamp_trust_and_causes_that_sum_to_one() -> None:
+    for item in demo.run().margins.margins:
+        if item.criterion in ("yield", "tensile rupture"):
+            assert STAMP in item.note
+            assert item.trust in ("converged", "coarse", "singular", "near an attachment")
+            assert sum(cause.share for cause in item.causes) == pytest.approx(1.0, abs=1e-9)
+
+
+def test_downforce_alone_presses_the_top_studs_and_pulls_the_bottom_ones() -> None:
+    run = demo.run()
+    case = run.cases.names.index("downforce_only")
+    for face in run.cases.faces.values():
+        axial = face.stud_axial[case].sum(axis=0)
+        height = face.stud_at[:, 1]
+
+        assert (axial[height == height.max()] < 0.0).all()
+        assert (axial[height == height.min()] > 0.0).all()
+
+
+def test_downforce_alone_presses_the_top_fifth_of_the_solid_and_pulls_the_bottom_fifth() -> None:
+    """The first moment of the longitudinal stress over the middle section is the sagging moment there."""
+    run = demo.run()
+    assert run.block is not None
+    assert run.library is not None
+    assert run.pads is not None
+    case = run.cases.names.index("downforce_only")
+    state = run.pads.weights[run.pads.middle, case].sum(axis=0)
+    x = (run.cases.faces["front"].reference[0] + run.cases.faces["rear"].reference[0]) / 2.0
+    stress = section_stress(run.block, run.library, state, float(x))
+
+    assert stress.top[0] < 0.0 < stress.bottom[0]
+    assert stress.about_y[0] == pytest.approx(-sagging(run, case, x, stress.centroid[1]), rel=5e-3)
+
+
+def sagging(run: demo.Run, case: int, x: float, height: float) -> float:
+    """M_sag of the front on the rear part at the middle section about its own centroid, from the car's rear side."""
+    from blockload.car.stations import reference_line, section_along
+
+    section = section_along(run.cases, np.array([x]))[case, 0]
+    shift = height - reference_line(run.cases, np.array([x]))[0, 2]
+    # The moment about a point higher by `shift`: M_y changes by -N shift, and M_sag = -M_y.
+    return float(section[SECTION.index("M_sag")] + shift * section[SECTION.index("N")])
+
+
+def test_a_flexibility_wrong_by_one_per_cent_is_caught() -> None:
+    run = demo.run()
+    assert run.block is not None
+    assert run.library is not None
+    assert run.pads is not None
+    wrong = replace(run.library, flexibility=run.library.flexibility * 1.01)
+    margins = judge(run.case, run.cases, run.block, wrong, install(run.cases, run.block, wrong, run.case))
+
+    assert "flexibility is the average motion of the attachments" in [
+        item.name for item in margins.checks if not item.ok
+    ]
+
+
+@pytest.mark.parametrize("key", ["faces.front.studs.TL", "faces.rear.studs.MR"])
+def test_a_pad_moved_by_50_mm_is_refused_by_its_name(key: str) -> None:
+    case = read(demo.CASES / "demo.toml")
+    face, name = key.split(".")[1], key.split(".")[-1]
+    stud = next(item for item in case.faces[face].studs if item.name == name)
+    moved = f"({stud.at[0]}, {stud.at[1] + 0.05}) m"
+    with pytest.raises(BlockError, match=name):
+        build(read(demo.CASES / "demo.toml", [f"{key}={moved}"]))
+
+
+def test_left_and_right_exchanged_is_refused(tmp_path: Path) -> None:
+    """Exchanging the studs is refused on reading; exchanging the pads at the mesh."""
+    with pytest.raises(CaseError, match="TL"):
+        read(
+            demo.CASES / "demo.toml",
+            ["faces.front.studs.TL=(-0.240, 0.470) m", "faces.front.studs.TR=(0.240, 0.470) m"],
+        )
+    swapped = ["block.attachments.front.TL=pad_front_TR", "block.attachments.front.TR=pad_front_TL"]
+    with pytest.raises(BlockError, match="TL"):
+        build(read(demo.CASES / "demo.toml", swapped))
+
+
+def test_a_combination_of_load_cases_equals_the_case_of_the_combination() -> None:
+    """Weight alone and downforce alone add up to both together, in faces, pads and stress."""
+    base = read(demo.CASES / "demo.toml")
+    quiet = base.manoeuvres[1]
+    both, weight, down = (
+        replace(quiet, name="-".join(parts), drive="coast", overall_ratio=None, parts=parts)
+        for parts in (("weight", "downforce"), ("weight",), ("downforce",))
+    )
+    run = demo.run()
+    assert run.block is not None
+    assert run.library is not None
+    cases = balance(replace(base, manoeuvres=(both, weight, down)))
+    pads = install(cases, run.block, run.library, base)
+    state = pads.weights[pads.middle].sum(axis=1)
+    stress = np.asarray(run.library.stress) @ state.T
+    whole, sum_of_parts = stress[..., 0], stress[..., 1] + stress[..., 2]
+
+    assert np.abs(whole - sum_of_parts).max() <= 1e-9 * np.abs(whole).max()
+
+
+def test_a_second_run_does_not_touch_the_factorisation(monkeypatch: pytest.MonkeyPatch) -> None:
+    from blockload import pipeline
+    from blockload.response import respond
+
+    first = demo.run()
+
+    def refuse(*_args: object, **_kwargs: object) -> None:
+        pytest.fail("the factorisation was called again")
+
+    monkeypatch.setattr(respond, "factorise", refuse)
+    second = pipeline.check(demo.CASES / "demo.toml")
+
+    assert first.library is not None
+    assert second.library is not None
+    assert second.library.from_cache
+    assert second.margins.verdict == first.margins.verdict
+
+
+def test_the_concept_needs_at_most_25_numbers_and_answers_at_level_faces() -> None:
+    import re
+
+    text = (demo.CASES / "concept.toml").read_text(encoding="utf-8")
+    body = "\n".join(line.split("#")[0] for line in text.splitlines() if not line.startswith(("format", "title")))
+    values = "".join(line.partition("=")[2] for line in body.splitlines(keepends=True))
+    numbers = re.findall(r"(?<![\w.])[-+]?\d+(?:\.\d+)?", values)
+    run = demo.run("concept")
+
+    assert len(numbers) <= 25
+    assert run.margins.verdict.level == "faces"
+    assert run.margins.requirements
+    assert run.block is None
+
+
+def test_a_wheel_load_below_zero_is_flagged_and_nothing_is_shown() -> None:
+    with warnings.catch_warnings():
+        warnings.simplefilter("error")
+        run = demo.run("demo", "manoeuvres.corner_left.acceleration=(0, 38, 0) m/s^2")
+
+    assert run.cases.wheel_lift.any() or (run.cases.wheels[..., 2] < 1e-6).any()
+    assert run.margins.verdict.word in ("not shown", "ruled out")
