@@ -1,9 +1,10 @@
 """From margins and checks to a verdict.
 
-`ruled out`: a margin fails at both ends of its band and its number may be believed. A stress on a sharp re-entrant
+`ruled out`: a margin fails at both ends of its band and its number may be believed. A stress at a sharp re-entrant
 edge or within a pad diameter of an attachment may not: it alone cannot rule a block out, and it cannot show one
-either. A margin in a load case that lifts a wheel cannot rule out, for that is not a state of the car; nor one in a
-load case whose aero map was read beyond its grid.
+either. A coarse stress counts only if it fails with the spread of its single elements taken off as well. A margin in a
+load case that lifts a wheel cannot rule out, for that is not a state of the car; nor one in a load case whose aero map
+was read beyond its grid.
 `not shown`: a check fails, a band crosses zero, a failing number is not believed, a criterion or base state is
 missing, a guess may govern, or there is no solid block yet. `shown within scope`: none of these.
 """
@@ -11,6 +12,8 @@ missing, a guess may govern, or there is no solid block yet. `shown within scope
 from __future__ import annotations
 
 from collections.abc import Sequence
+
+import numpy as np
 
 from ..block.model import Block, Material
 from ..car.model import LoadCases
@@ -24,8 +27,6 @@ from .requirements import requirements
 from .scope import not_judged
 from .studs import stud_margins
 from .wording import INCREMENT
-
-BELIEVED = ("converged", "coarse")
 
 
 def judge(
@@ -119,8 +120,12 @@ def verdict(case: Case, cases: LoadCases, margins: Sequence[Margin], checks: Seq
 
 def rules_out(item: Margin, lifted: Sequence[str] = ()) -> bool:
     """Whether a margin fails at both ends of its band, in a state of the car, with a number that is believed."""
-    fails = item.band is not None and max(item.band) < 0.0
-    return fails and item.trust in BELIEVED and item.load_case not in lifted
+    if item.band is None or item.load_case in lifted:
+        return False
+    best = max(item.band)
+    if item.trust == "coarse":
+        best = np.inf if item.spread is None else (1.0 + best) / max(1.0 - item.spread, 1e-6) - 1.0
+    return item.trust in ("converged", "coarse") and best < 0.0
 
 
 def _doubts(

@@ -25,7 +25,7 @@ class Margin:
     """allowable / (factor × applied) − 1 for one criterion at one place, governing case first.
 
     `margin` is the worse end of `band` (None without load); `second` is the second-worst case and its margin;
-    `guesses` names the guessed or bounded inputs that decide it.
+    `spread` is how far the stress of single elements lies from its mean, as a share, where that was looked at.
     """
 
     criterion: str
@@ -43,6 +43,7 @@ class Margin:
     second: tuple[str, float] | None = None
     method: str = ""
     note: str = ""
+    spread: float | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

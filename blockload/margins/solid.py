@@ -59,7 +59,7 @@ def strength_margins(
     """Return the strength margins at the hotspots of every criterion, and the field at the middle stiffness."""
     fields = strength_fields(case, block, library, pads)
     where = atlas(block)
-    ground = Ground(block=block, library=library, where=where, marked=zones(where, block, library))
+    ground = Ground(block=block, library=library, where=where, marked=zones(where, library))
     margins = [
         _margin(field, int(entry), ground, cases=cases, pads=pads)
         for field in fields
@@ -106,7 +106,7 @@ def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads:
     at = library.surface_points[library.entry_node[entry]]
     split = shares(field.criterion, np.asarray(library.stress[entry]).dot(state.T).T)
     known = State(criterion=field.criterion, weights=state.sum(axis=0), applied=applied)
-    trust, reason = trust_of(ground.where, ground.marked, ground.block, library, entry, known)
+    trust = trust_of(ground.where, ground.marked, ground.block, library, entry, known)
     second = None
     if len(cases.names) > 1:
         value = float(field.peaks.second[entry, variant])
@@ -124,11 +124,12 @@ def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads:
         factor=factor,
         margin=low,
         band=(low, high),
-        trust=trust,
+        trust=trust.word,
         causes=causes(pads.sources, split),
         second=second,
         method=f"{field.criterion.method}; {pads.variants[variant]} pads",
-        note=f"{INCREMENT}; {reason}",
+        note=f"{INCREMENT}; {trust.reason}",
+        spread=trust.spread,
     )
 
 

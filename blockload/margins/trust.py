@@ -1,6 +1,6 @@
 """How far a stress may be believed.
 
-`singular` within one element of a sharp re-entrant edge: the elastic stress there has no finite value. `near an
+`singular` within `FILLET` of a sharp re-entrant edge: the elastic stress there has no finite value. `near an
 attachment` within one pad diameter of it: the evenly spread load is an idealisation of the joint. `coarse` where the
 stress of single elements around the place differs from their mean by more than `SPREAD` of the applied stress;
 `converged` where it does not. The spread on one mesh is an error indicator and no refinement study, and is said so.
@@ -12,6 +12,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.spatial import cKDTree
 
 from ..arrays import Floats, Ints
 from ..block.model import Block
@@ -22,6 +23,7 @@ from .places import Atlas, beside_attachments
 from .strength import Criterion
 
 SPREAD = 0.05
+FILLET = 0.005  # m; about a casting's fillet radius: common practice, no source
 SINGULAR = "at a sharp re-entrant edge: the stress rises with every refinement; model the fillet"
 
 
@@ -29,7 +31,7 @@ SINGULAR = "at a sharp re-entrant edge: the stress rises with every refinement; 
 class Zones:
     """Surface nodes whose stress is not to be taken at its word.
 
-    singular (n,): within one element of a sharp re-entrant edge; beside (n,): index of the attachment next to it or −1.
+    singular (n,): within FILLET of a sharp re-entrant edge; beside (n,): index of the attachment next to it or −1.
     """
 
     singular: NDArray[np.bool_]
@@ -42,15 +44,14 @@ class Zones:
         return result
 
 
-def zones(where: Atlas, block: Block, library: Library) -> Zones:
+def zones(where: Atlas, library: Library) -> Zones:
     """Mark the surface nodes in each zone."""
-    surface = np.asarray(library.surface_nodes)
-    cells = block.mesh.dofs.element_dofs
-    sharp = np.zeros(block.mesh.doflocs.shape[1], dtype=bool)
-    sharp[surface[sharp_inner_edges(library.surface_points, library.surface_triangles)]] = True
-    touched = np.zeros_like(sharp)
-    touched[cells[:, sharp[cells].any(axis=0)]] = True
-    return Zones(singular=touched[surface], beside=beside_attachments(where, library.surface_points))
+    points = library.surface_points
+    sharp = sharp_inner_edges(points, library.surface_triangles)
+    singular = np.zeros(len(points), dtype=bool)
+    if len(sharp):
+        singular = np.isfinite(cKDTree(points[sharp]).query(points, distance_upper_bound=FILLET)[0])
+    return Zones(singular=singular, beside=beside_attachments(where, points))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -62,20 +63,31 @@ class State:
     applied: float
 
 
-def trust_of(where: Atlas, marked: Zones, block: Block, library: Library, entry: int, state: State) -> tuple[str, str]:
-    """Return the trust word of a stress at one surface entry and the reason for it."""
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Trust:
+    """A trust word, the reason for it, and the spread of single elements where it was looked at."""
+
+    word: str
+    reason: str
+    spread: float | None = None
+
+
+def trust_of(where: Atlas, marked: Zones, block: Block, library: Library, entry: int, state: State) -> Trust:
+    """Return how far the stress at one surface entry may be believed."""
     node = int(library.entry_node[entry])
     if marked.singular[node]:
-        return "singular", SINGULAR
+        return Trust(word="singular", reason=SINGULAR)
     beside = int(marked.beside[node])
     if beside >= 0:
         name = where.attachments[beside][0]
-        return "near an attachment", f"within one pad diameter of {name}, whose load is spread evenly"
+        reason = f"within one pad diameter of {name}, whose load is spread evenly"
+        return Trust(word="near an attachment", reason=reason)
     spread = element_spread(block, library, entry, state)
     if not np.isfinite(spread):
-        return "coarse", "a single element reaches this place: nothing to compare it with"
+        return Trust(word="coarse", reason="a single element reaches this place: nothing to compare it with")
     word = "converged" if spread <= SPREAD else "coarse"
-    return word, f"single elements differ by {spread:.0%} from their mean (one mesh; limit {SPREAD:.0%})"
+    reason = f"single elements differ by {spread:.0%} from their mean (one mesh; limit {SPREAD:.0%})"
+    return Trust(word=word, reason=reason, spread=spread)
 
 
 def element_spread(block: Block, library: Library, entry: int, state: State) -> float:

@@ -61,6 +61,14 @@ def test_a_number_that_is_not_believed_rules_nothing_out(trust) -> None:
     assert trust in found.reasons[0]
 
 
+def test_a_coarse_stress_rules_out_only_by_more_than_its_own_spread() -> None:
+    """Failing by a third with elements 20 % apart is a failure; with elements 50 % apart, or unlooked at, it is not."""
+    failing = margin(-0.4, -1 / 3, "coarse")
+    assert word(replace(failing, spread=0.2)).word == "ruled out"
+    assert word(replace(failing, spread=0.5)).word == "not shown"
+    assert word(failing).word == "not shown"
+
+
 def test_a_wheel_in_the_air_rules_nothing_out_and_shows_nothing() -> None:
     lifted = replace(CASES, wheel_lift=np.array([True, False, False, False, False]))
     assert word(margin(-0.5, -0.4), cases=lifted).word == "not shown"
