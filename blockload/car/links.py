@@ -24,7 +24,9 @@ LINKS = ("upper_fore", "upper_aft", "lower_fore", "lower_aft", "steer", "pushrod
 MIRROR = np.array((1.0, -1.0, 1.0))
 """Signs that turn a place on the left into the one on the right."""
 CONDITION_LIMIT = 1e4
-"""Unsourced, common practice: beyond it a corner is a near-mechanism, or its points mix units."""
+"""Unsourced, common practice: beyond it a corner is a near-mechanism, or its points mix units, and is refused."""
+CONDITION_USUAL = 1e3
+"""Unsourced: usual corners have about 20; beyond this the weakest members are pointed out."""
 _TAKING_PART = 0.3  # of the largest entry of a singular vector: below it a member is not named
 _SHORTEST = 1e-3  # m: shorter than this a member has no direction worth the name
 
@@ -34,7 +36,8 @@ class CornerMap:
     """What a corner's members do, linear in the wrench (6,) on the corner about its wheel centre.
 
     tension (6, 6): tension of each member, along its own line; force (6, 3, 6): on the body at each inboard end;
-    inboard (6, 3): those ends; condition: ratio of the largest to the smallest singular value of the equations.
+    inboard (6, 3): those ends; condition: ratio of the largest to the smallest singular value of the equations, moments
+    about the wheel centre in metres; weakest: members strained most against each other for the least effect.
     """
 
     names: tuple[str, ...]
@@ -42,6 +45,7 @@ class CornerMap:
     tension: Floats
     force: Floats
     condition: float
+    weakest: tuple[str, ...]
 
 
 def directions(outboard: Floats, inboard: Floats, names: Sequence[str] = LINKS, where: str = "links") -> Floats:
@@ -73,7 +77,7 @@ def six_links(outboard: Floats, inboard: Floats, about: ArrayLike, *, where: str
     """
     along = directions(outboard, inboard, LINKS, where)
     matrix = equilibrium_matrix(outboard, inboard, about)
-    condition = checked_condition(matrix, LINKS, where)
+    condition, weakest = checked_condition(matrix, LINKS, where)
     tension = -np.linalg.inv(matrix)
     force = -along[:, :, None] * tension[:, None, :]
     return CornerMap(
@@ -82,25 +86,27 @@ def six_links(outboard: Floats, inboard: Floats, about: ArrayLike, *, where: str
         tension=frozen(tension),
         force=frozen(force),
         condition=condition,
+        weakest=weakest,
     )
 
 
-def checked_condition(matrix: Floats, unknowns: Sequence[str], where: str) -> float:
-    """Condition number of equilibrium equations (n, n); CaseError above the limit, naming the unknowns at fault.
+def checked_condition(matrix: Floats, unknowns: Sequence[str], where: str) -> tuple[float, tuple[str, ...]]:
+    """Condition number of equilibrium equations (n, n) and the weakest members; CaseError above the limit, naming them.
 
     The first six rows are force and moment on the upright.
     """
     left, values, right = np.linalg.svd(matrix)
     condition = float(values[0] / values[-1]) if values[-1] > 0 else np.inf
-    if condition <= CONDITION_LIMIT:
-        return condition
     weight = np.abs(right[-1])
-    members = [name for name, part in zip(unknowns, weight, strict=True) if part >= _TAKING_PART * weight.max()]
+    taking = [name for name, part in zip(unknowns, weight, strict=True) if part >= _TAKING_PART * weight.max()]
+    members = tuple(dict.fromkeys(taking))
+    if condition <= CONDITION_LIMIT:
+        return condition, members
     raise CaseError(
         where,
         f"these members hardly hold the wheel: condition number {condition:.3g}; strained against each other without "
-        f"holding it: {', '.join(dict.fromkeys(members))}; the wheel is free to {_motion(left[:6, -1])}",
-        f"a condition number up to {CONDITION_LIMIT:g}; usual corners have a few hundred",
+        f"holding it: {', '.join(members)}; the wheel is free to {_motion(left[:6, -1])}",
+        f"a condition number up to {CONDITION_LIMIT:g} about the wheel centre; usual corners have about 20",
         "check these points for a typing error, a wrong unit, or members that meet in one line or plane",
     )
 

@@ -48,11 +48,15 @@ class LocalLoad:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class LinkLoads:
-    """Tensions (C, S, n) of a corner's links and of what its rocker works on; condition number of its equations."""
+    """Tensions (C, S, n) of a corner's links and of what its rocker works on.
+
+    condition is the condition number of the corner's equations, weakest names the members that hold it least.
+    """
 
     names: tuple[str, ...]
     tension: Floats
     condition: float
+    weakest: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)

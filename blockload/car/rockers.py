@@ -142,7 +142,7 @@ def _lever(pivot: Floats, axis: Floats, start: Floats, line: Floats, where: str)
     if abs(lever) < _SHORTEST_LEVER:
         raise CaseError(
             where,
-            f"its line of action passes the rocker's axis at {1e3 * abs(lever):.3g} mm",
+            f"its line of action passes the rocker's axis at {round(1e3 * abs(lever), 6):g} mm",
             f"a lever of at least {1e3 * _SHORTEST_LEVER:g} mm",
             "check pivot, axis and both ends: with no lever the rocker is free to turn",
         )

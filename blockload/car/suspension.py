@@ -8,6 +8,7 @@ is one matrix product.
 
 from __future__ import annotations
 
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from types import MappingProxyType
 
@@ -17,7 +18,7 @@ from ..arrays import Floats, frozen
 from ..case.model import CARRIERS, CORNERS, Axle, Case
 from ..errors import CaseError
 from .bodies import AXLES, Chassis
-from .links import MIRROR, CornerMap, ends, six_links
+from .links import CONDITION_USUAL, MIRROR, CornerMap, ends, six_links
 from .model import LinkLoads
 from .rockers import RockerMap, rockers
 from .twobody import two_bodies
@@ -90,9 +91,19 @@ def link_loads(maps: tuple[AxleMap, AxleMap], wrenches: Floats) -> MappingProxyT
         for side, corner in enumerate(axle.sides):
             tension = pair @ axle.tension[side].reshape(-1, 12).T
             result[CORNERS[2 * k + side]] = LinkLoads(
-                names=axle.members, tension=sealed(tension), condition=corner.condition
+                names=axle.members, tension=sealed(tension), condition=corner.condition, weakest=corner.weakest
             )
     return MappingProxyType(result)
+
+
+def condition_notes(links: Mapping[str, LinkLoads]) -> Iterator[str]:
+    """Sentences on corners that are solved, but held less well than usual."""
+    for corner, loads in links.items():
+        if loads.condition > CONDITION_USUAL:
+            yield (
+                f"{corner}: condition number {loads.condition:.3g} (usual: about 20): the wheel is weakly held by "
+                f"{', '.join(loads.weakest)}, and small errors of their points move the tensions much"
+            )
 
 
 def _axle_map(axle: Axle, frame: Chassis, first: int) -> AxleMap:

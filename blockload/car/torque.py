@@ -36,8 +36,8 @@ _SLACK = 1e-6
 class PowerTrain:
     """What each load case (C,) asks of the engine; nan where a figure it needs is missing.
 
-    speed [rad/s] of the crank (nan at rest, where the clutch slips), torque [N·m] at the clutch, available [N·m] at that speed, piston_speed [m/s], pressure
-    [Pa]: brake mean effective pressure, power [W].
+    speed [rad/s] of the crank (nan at rest, where the clutch slips), torque [N·m] at the clutch, available [N·m] at
+    that speed, piston_speed [m/s], pressure [Pa]: brake mean effective pressure, power [W].
     """
 
     speed: Floats

@@ -50,15 +50,21 @@ def two_bodies(
     matrix[6:12, 10:13] = _columns(inboard[aft] - joint)
     matrix[12, 7:10], matrix[12, 10:13] = _least_bending(along[fore], along[aft], inboard[fore] - inboard[aft])
     unknowns = (*(LINKS[j] for j in upright), *(wishbone,) * 3, "pushrod", *(LINKS[fore],) * 3, *(LINKS[aft],) * 3)
-    condition = checked_condition(matrix, unknowns, where)
+    condition, weakest = checked_condition(matrix, unknowns, where)
     solved = frozen(-np.linalg.inv(matrix)[:, :6])
-    return _corner_map(solved, upright, (fore, aft), along, inboard, condition)
+    tension, force = _members(solved, upright, (fore, aft), along)
+    return CornerMap(
+        names=LINKS,
+        inboard=frozen(inboard),
+        tension=frozen(tension),
+        force=frozen(force),
+        condition=condition,
+        weakest=weakest,
+    )
 
 
-def _corner_map(
-    solved: Floats, upright: list[int], legs: tuple[int, int], along: Floats, inboard: Floats, condition: float
-) -> CornerMap:
-    """Tensions and inboard forces from the solution (13, 6) of the two bodies."""
+def _members(solved: Floats, upright: list[int], legs: tuple[int, int], along: Floats) -> tuple[Floats, Floats]:
+    """Tensions (6, 6) and inboard forces (6, 3, 6) from the solution (13, 6) of the two bodies."""
     tension, force = np.zeros((6, 6)), np.zeros((6, 3, 6))
     for column, j in [*enumerate(upright), (6, 5)]:
         tension[j] = solved[column]
@@ -67,9 +73,7 @@ def _corner_map(
         pull = solved[7 + 3 * k : 10 + 3 * k]  # of the body on the wishbone
         tension[j] = along[j] @ pull
         force[j] = -pull
-    return CornerMap(
-        names=LINKS, inboard=frozen(inboard), tension=frozen(tension), force=frozen(force), condition=condition
-    )
+    return tension, force
 
 
 def _outer_joint(outboard: Floats, fore: int, aft: int, where: str) -> Floats:
