@@ -13,6 +13,7 @@ import numpy as np
 
 from ..arrays import Floats, frozen
 from ..case.model import CARRIERS, FACES, Case, Device, Manoeuvre
+from .aero_split import only_totals
 from .aero_totals import as_devices
 from .balance import balance
 from .model import LoadCases
@@ -39,7 +40,7 @@ class Influence:
 
 def per_kilonewton(case: Case) -> Influence:
     """Section wrenches and stud forces per kilonewton of downforce on each device, and were it carried elsewhere."""
-    case = as_devices(case)
+    case = replace(case, devices=case.aero_split) if only_totals(case) else as_devices(case)
     bodies = [device.on for device in case.devices]
     own = _unit_cases(case, case.devices)
     elsewhere = [replace(device, on=body) for device in case.devices for body in CARRIERS]

@@ -33,7 +33,11 @@ class DeviceTable(Table):
     at_speed: float | None = quantity(
         "speed", "speed at which downforce and drag hold", example='"250 km/h"', band=("1 m/s", "150 m/s")
     )
-    map: str | None = words("aero map, CSV (kept for later use)", frame="path", example='"aero.csv"')
+    map: str | None = words(
+        "aero map, CSV: its figures over speed, ride heights, yaw, steer and state stand instead of the areas",
+        frame="path",
+        example='"aero.csv"',
+    )
     outside: Literal["refuse", "clamp"] | None = words(
         "beyond the map's grid: refuse, or clamp to its edge and mark the load case",
         default="refuse",

@@ -18,7 +18,7 @@ from ..car.aero_totals import Totals, as_devices, totals
 from ..case.aero_csv import PER_AXLE, AeroFile, read_aero
 from ..case.model import AeroMap, Case, Device
 from .aero_alarms import alarms
-from .aero_tables import heights, influence_table, moved_table, percent
+from .aero_tables import heights, influence_table, moved_table, percent, three_speeds
 from .tables import Table, table
 from .wording import figure, fixed, plain_name
 
@@ -43,7 +43,7 @@ def aero_against(path: Path, case: Case | None = None) -> AeroReading:
     if case is None:
         return AeroReading(tables=tuple(tables), warnings=())
     own, merged, notes = _old(case), *_merged(case, file)
-    speeds = _speeds(case)
+    speeds = three_speeds(case)
     old, new = totals(own, speeds), totals(merged, speeds)
     tables += [_sums(old, new), *_shares(old, new), _devices(own, merged, old, new)]
     if file.reference_area is not None:
@@ -134,21 +134,12 @@ def _device(name: str, found: AeroMap, at: Floats) -> Device:
 
 def _centre(case: Case) -> Floats:
     """Where the old downforce acts along the car, at the height of its drag, at the highest speed."""
-    found = totals(case, _speeds(case)[-1:])
+    found = totals(case, three_speeds(case)[-1:])
     front, rear = case.axles["front"].x, case.axles["rear"].x
     x = rear + float(found.share_without[0]) * (front - rear)
     lost = float(found.share_without[0] - found.share_with[0]) * found.downforce.sum() * (front - rear)
     height = lost / found.drag.sum() if found.drag.sum() else 0.0
     return np.array([x, 0.0, height])
-
-
-def _speeds(case: Case) -> tuple[float, ...]:
-    """A third, two thirds and all of the highest speed of the case's manoeuvres."""
-    top = max((item.speed for item in case.manoeuvres), default=0.0)
-    if top <= 0 and case.aero_total is not None:
-        top = case.aero_total.at_speed
-    top = top if top > 0 else 50.0
-    return (top / 3, 2 * top / 3, top)
 
 
 def _sums(old: Totals, new: Totals) -> Table:

@@ -7,6 +7,7 @@ from collections.abc import Sequence
 import numpy as np
 
 from ..car.aero_check import per_kilonewton
+from ..car.aero_split import only_totals
 from ..car.aero_totals import totals
 from ..car.model import SECTION, LoadCases
 from ..case.model import CARRIERS, FACES, Case
@@ -14,6 +15,22 @@ from .tables import Table, table
 from .wording import ABSENT, figure, fixed, plain_name
 
 _OPEN = 0.5  # N or N·m: a smaller band is no band
+
+
+def case_tables(case: Case) -> tuple[Table, ...]:
+    """What the aero of a case adds up to, and what each device does to the faces; nothing for a car without."""
+    if not case.devices and not only_totals(case):
+        return ()
+    return totals_table(case, three_speeds(case)), influence_table(case), moved_table(case)
+
+
+def three_speeds(case: Case) -> tuple[float, ...]:
+    """Return a third, two thirds and all of the highest speed of the case's manoeuvres."""
+    top = max((item.speed for item in case.manoeuvres), default=0.0)
+    if top <= 0 and case.aero_total is not None:
+        top = case.aero_total.at_speed
+    top = top if top > 0 else 50.0
+    return (top / 3, 2 * top / 3, top)
 
 
 def totals_table(case: Case, speeds: Sequence[float]) -> Table:

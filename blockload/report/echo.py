@@ -194,6 +194,8 @@ def _clear_of(spot: tuple[float, float], others: list[tuple[float, float]]) -> t
 
 def _device_arrows(sketch: Sketch, device: Device, spot: tuple[float, float]) -> None:
     """Downforce from above, drag from ahead, ending at the device; 22 px per m² of area."""
+    if device.table is not None:
+        return  # a map has no one area to draw
     stroke = BODY_COLOURS[device.on][1]
     for area, (ux, uy) in ((device.downforce_area, (0, 1)), (device.drag_area, (1, 0))):
         if area:
@@ -281,6 +283,7 @@ def _lists(sketch: Sketch, case: Case) -> float:
         sketch.add(_bubble((x + 10, y - 4), k + 1, device), _swatch(sketch, x + 26, y, device.on))
         sketch.add(text((x + 60, y), f"{plain_name(device.name)}: {device.on}"))
         areas = f"{fixed(device.downforce_area, 2)}, {fixed(device.drag_area, 2)} m²"
+        areas = "from a map" if device.table is not None else areas
         sketch.add(text((WIDTH - 8, y), areas, size=SMALL, anchor="end", fill=GREY))
     y += 30
     for words in (

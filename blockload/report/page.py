@@ -18,6 +18,7 @@ from ..car.model import LoadCases
 from ..case.model import Case
 from ..margins.model import Margins
 from . import tables
+from .aero_tables import case_tables, load_case_tables
 from .bands import bands_svg
 from .cautions import cautions
 from .choice import governing_index, lowest, lowest_per_criterion
@@ -135,6 +136,8 @@ def _load_tables(case: Case, cases: LoadCases) -> list[tables.Table]:
         tables.face_routes(case, cases),
         tables.stud_extremes(cases),
         tables.device_table(case),
+        *load_case_tables(cases),
+        *case_tables(case),
     ]
 
 

@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..car.model import BODIES, SECTION, LoadCases
-from ..case.model import CORNERS, Case, Check
+from ..case.model import CORNERS, Case, Check, Device
 from ..margins.model import Margin, Margins
 from .wording import (
     ABSENT,
@@ -288,12 +288,24 @@ def unsourced(case: Case) -> tuple[str, ...]:
 
 def device_table(case: Case) -> Table:
     """Every aero device with the body that carries it."""
-    rows = [
-        (plain_name(item.name), item.on, point(item.at), fixed(item.downforce_area, 3), fixed(item.drag_area, 3))
-        for item in case.devices
-    ]
+    rows = [(plain_name(item.name), item.on, point(item.at), *_areas(item)) for item in case.devices]
+    note = "Areas are C_z·A (+ down) and C_x·A (+ drag)."
+    if not case.devices:
+        rows = [(plain_name(item.name), item.on, point(item.at), "open", "open") for item in case.aero_split]
+        note = "Possible carriers of the stated totals; their areas are open."
     columns = ("device", "carried by", "at, m", "downforce area, m²", "drag area, m²")
-    return table("Aero devices", columns, rows, "Areas are C_z·A (+ down) and C_x·A (+ drag).")
+    return table("Aero devices", columns, rows, note)
+
+
+def _areas(device: Device) -> tuple[str, str]:
+    """Downforce and drag area of a device, as a span where a map gives them."""
+    if device.table is None:
+        return fixed(device.downforce_area, 3), fixed(device.drag_area, 3)
+    spans = []
+    for axis in (2, 0):
+        values = -device.table.values[..., axis]
+        spans.append(f"{fixed(values.min(), 3)} to {fixed(values.max(), 3)}")
+    return spans[0], spans[1]
 
 
 # Ending of a key: unit shown and its size in SI.
