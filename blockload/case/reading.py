@@ -228,6 +228,7 @@ def _assembled(
         defaults=(),
         checks=(),
         tyres=build_tyres(table.tyres, notes),
+        chassis_torsion=table.chassis.torsion_stiffness if table.chassis is not None else None,
         points=build_points(table),
         performance=build_performance(table.performance, notes),
         catalogue=build_catalogue(table, notes),

@@ -6,7 +6,7 @@ Tables whose use comes later are kept as they stand in the file; they are read b
 from typing import Any, Literal
 
 from .schema_block import BlockTable, ConceptTable, FacesTable, InstallationTable, KnownTable, LimitsTable, PathTable
-from .schema_car import AxlesTable, BodiesTable, CarTable, DriveTable, EngineTable, FrameTable, TyresTable
+from .schema_car import AxlesTable, BodiesTable, CarTable, ChassisTable, DriveTable, EngineTable, FrameTable, TyresTable
 from .schema_loads import AeroSplitTable, AeroTotalTable, DeviceTable, ManoeuvreTable
 from .schema_situations import CatalogueTable, EnvelopeTable, PerformanceTable, PointsTable
 from .tables import Table, quantity, table, tables, words
@@ -44,6 +44,7 @@ class CaseTable(Table):
     car: CarTable | None = table("short entry: the tub is what is left after engine, gearbox and corners")
     bodies: BodiesTable = table("the rigid masses of the chain", needed=True)
     axles: AxlesTable = table("front and rear axle", needed=True)
+    chassis: ChassisTable | None = table("the chassis between the axles")
     aero: dict[str, DeviceTable] = tables("aero devices by name")
     aero_total: AeroTotalTable | None = table("cross-check of the devices")
     aero_split: dict[str, AeroSplitTable] = tables("possible carriers of [aero_total] where no devices are known")

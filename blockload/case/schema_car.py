@@ -260,6 +260,17 @@ class AxlesTable(Table):
     rear: AxleTable = table("the rear axle", needed=True)
 
 
+class ChassisTable(Table):
+    """[chassis]: what lies between the axles as a whole."""
+
+    torsion_stiffness: float | None = quantity(
+        "torsional_stiffness",
+        "torsional stiffness between the axles; it shifts the roll split, and a rigid chassis is taken when absent",
+        example='"12 kNm/deg"',
+        band=("0.2 kNm/deg", "500 kNm/deg"),
+    )
+
+
 class TyresTable(Table):
     """[tyres]: grip, to show how much of it a load case uses."""
 
