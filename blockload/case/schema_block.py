@@ -5,7 +5,7 @@ from typing import Any, Literal
 from .schema_car import Carrier
 from .tables import Table, Vector, quantity, table, tables, words
 
-COMMON = "common practice, no source"
+COMMON = "common practice, unsourced"
 
 
 class StudTable(Table):

@@ -250,3 +250,13 @@ def test_the_demo_reads_fast() -> None:
         times.append(time.perf_counter() - start)
 
     assert min(times) < 0.06
+
+
+def test_common_practice_is_called_unsourced() -> None:
+    """A default that rests on habit alone says so in the one word that reports look for."""
+    sources = {item.key: item.source for item in read(CASES / "concept.toml").defaults}
+
+    for key in ("limits.yield_factor", "limits.slip_factor", "faces.front.stud.friction", "bodies.gearbox.cg"):
+        assert "unsourced" in sources[key]
+    for key in ("gravity", "air_density", "limits.rupture_factor"):
+        assert "unsourced" not in sources[key]
