@@ -36,7 +36,14 @@ def graph(points: Floats, triangles: Ints) -> Any:
     ).tocsr()
 
 
-def peaks_apart(values: Floats, points: Floats, triangles: Ints, *, apart: float = APART, most: int = MOST) -> Ints:
+def peaks_apart(
+    values: Floats,
+    points: Floats,
+    triangles: Ints,
+    *,
+    most: int = MOST,
+    known: Ints | None = None,
+) -> Ints:
     """Return the nodes of the highest local maxima, highest first.
 
     Parameters
@@ -45,10 +52,10 @@ def peaks_apart(values: Floats, points: Floats, triangles: Ints, *, apart: float
         The field at the surface nodes; nothing at or below zero is a peak.
     points, triangles : array, shape (n, 3) and (t, 3)
         The surface [m].
-    apart : float
-        Least distance along the surface between two peaks [m].
     most : int
         How many to keep.
+    known : array, shape (k,), optional
+        Nodes of peaks kept before; none is found within APART of them.
 
     """
     pairs = edges(triangles)
@@ -58,6 +65,8 @@ def peaks_apart(values: Floats, points: Floats, triangles: Ints, *, apart: float
     candidates = np.flatnonzero((values >= neighbour) & (values > 0.0))
     lengths = graph(points, triangles)
     silent = np.zeros(len(values), dtype=bool)
+    if known is not None and len(known):
+        silent = np.isfinite(dijkstra(lengths, directed=False, indices=known, limit=APART)).any(axis=0)
     kept: list[int] = []
     for node in candidates[np.argsort(-values[candidates], kind="stable")]:
         if silent[node]:
@@ -65,7 +74,7 @@ def peaks_apart(values: Floats, points: Floats, triangles: Ints, *, apart: float
         kept.append(int(node))
         if len(kept) == most:
             break
-        silent |= np.isfinite(dijkstra(lengths, directed=False, indices=int(node), limit=apart))
+        silent |= np.isfinite(dijkstra(lengths, directed=False, indices=int(node), limit=APART))
     return np.array(kept, dtype=np.int64)
 
 

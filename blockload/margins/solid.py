@@ -86,8 +86,8 @@ def hot_entries(field: Field, ground: Ground) -> Ints:
     np.maximum.at(at_node, library.entry_node, worst)
     surface = (library.surface_points, library.surface_triangles)
     everywhere = peaks_apart(at_node, *surface, most=EVERYWHERE)
-    clear = peaks_apart(np.where(ground.marked.clear, at_node, 0.0), *surface, most=CLEAR)
-    nodes = np.array(list(dict.fromkeys([*everywhere.tolist(), *clear.tolist()])), dtype=np.int64)
+    clear = peaks_apart(np.where(ground.marked.clear, at_node, 0.0), *surface, most=CLEAR, known=everywhere)
+    nodes = np.concatenate([everywhere, clear])
     order = np.lexsort((-worst, library.entry_node))
     first = order[np.searchsorted(library.entry_node[order], nodes)]
     result: Ints = first

@@ -39,6 +39,16 @@ def test_no_two_peaks_within_15_mm_along_the_surface() -> None:
     assert len(found) == 2
 
 
+def test_peaks_kept_before_keep_their_distance_too() -> None:
+    points, triangles = sheet()
+    values = bump(points, (0.05, 0.05), 2.0) + bump(points, (0.05, 0.09), 1.0)
+    first = peaks_apart(values, points, triangles, most=1)
+
+    again = peaks_apart(np.where(np.arange(len(values)) == first[0], 0.0, values), points, triangles, known=first)
+
+    assert np.linalg.norm(points[again] - points[first[0]], axis=1).min() > APART - 1e-9
+
+
 def test_distance_is_along_the_surface_and_not_through_the_air() -> None:
     """Two sheets 5 mm apart, joined nowhere: a peak on each is kept."""
     points, triangles = sheet()
