@@ -4,8 +4,9 @@ The mesh is parted along element faces: elements whose centre lies behind the pl
 that the elements behind need at the nodes they share with the others, less the loads applied to them there, are what
 the front part exerts on the rear part. Equilibrium says it equals minus all loads and inertia behind; a field that
 does not solve the block's equations shows here.
-Stress on the exact plane comes from cutting every tetrahedron; its mean and first moment belong to beam theory's
-section: Σ σ_xx (z − z_c) dA = −M_sag.
+Stress over the section is integrated over a slab with a smooth window w(x) of unit area: ∫σ_xx (z − z_c) w dV is the
+virtual work of bending the slab as a beam does (v_x = (z − z_c)Φ, v_z = −∫Φ, Φ' = w, no other strain), so it equals
+−M_sag of the slab, where a single plane would see the stress jump from element to element.
 """
 
 from __future__ import annotations
@@ -17,14 +18,14 @@ import numpy as np
 from ..arrays import Floats, Ints
 from ..block.model import Block
 from ..errors import BlockError
-from .elements import Bools, Elements, elements_of, slopes
+from .elements import Bools, Elements, elements_of, jacobians, quadrature, shapes, slopes
 from .model import Library
-from .recovery import hooke
 from .relief import rigid_modes
 from .spreading import unit_wrenches
 from .stiffness import heat_loads, mass, stiffness
 
-CUT_ORDER = 6
+SLAB_ORDER = 7
+SLAB_ELEMENTS = 4
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -43,11 +44,11 @@ class SectionCut:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class SectionStress:
-    """Longitudinal stress on an exact plane, for k states.
+    """Longitudinal stress in a slab about a plane, for k states.
 
-    area [m²] and centroid (y, z) of the metal cut; force (k,) = ∫σ_xx dA [N]; about_y (k,) = ∫σ_xx (z − z_c) dA and
-    about_z (k,) = ∫σ_xx (y − y_c) dA [N·m]; top and bottom (k,): mean σ_xx [Pa] of the highest and lowest fifth of
-    the section's height.
+    area [m²] and centroid (y, z) of the metal, averaged over the slab; force (k,) = ∫σ_xx dA [N]; about_y (k,) =
+    ∫σ_xx (z − z_c) dA and about_z (k,) = ∫σ_xx (y − y_c) dA [N·m]; top and bottom (k,): mean σ_xx [Pa] of the highest
+    and lowest fifth of the section's height.
     """
 
     area: float
@@ -117,74 +118,49 @@ def _resultant(points: Floats, loads: Floats, nodes: Ints, reference: Floats) ->
     return np.concatenate([chosen.sum(axis=1), moment], axis=1)
 
 
-def section_stress(block: Block, library: Library, weights: Floats, x: float) -> SectionStress:
-    """Integrate σ_xx over the plane `x` for states `weights` (k, U) or (U,); curved edges are cut as straight."""
+def section_stress(
+    block: Block, library: Library, weights: Floats, x: float, thickness: float | None = None
+) -> SectionStress:
+    """Integrate σ_xx over a slab about the plane `x` for states `weights` (k, U) or (U,).
+
+    By default the slab is SLAB_ELEMENTS elements thick.
+    """
     states = np.atleast_2d(weights).T
     elements = elements_of(block)
-    owner, bary = plane_cut(elements, x)
-    if not len(owner):
+    reach = elements.points[elements.nodes[:, :4], 0]
+    low, high = reach.min(axis=1), reach.max(axis=1)
+    if thickness is None:
+        cut = (low <= x) & (high > x)
+        thickness = SLAB_ELEMENTS * float(np.median((high - low)[cut])) if cut.any() else 0.0
+    chosen = np.flatnonzero((low < x + thickness / 2) & (high > x - thickness / 2))
+    if not len(chosen):
         raise BlockError("section stress", f"the plane x = {x:.6g} m misses the block")
-    some = elements.take(owner)
-    corners = np.einsum("tvc,tci->tvi", bary, some.points[some.nodes[:, :4]])
-    size = np.linalg.norm(np.cross(corners[:, 1] - corners[:, 0], corners[:, 2] - corners[:, 0]), axis=1)
-    stress, place, area = [], [], []
-    for at, weight in _triangle_rule(CUT_ORDER):
-        point = np.einsum("v,tvc->tc", at, bary)
-        stress.append(_sigma_xx(some, point[:, 1:], library, states))
-        place.append(np.einsum("v,tvi->ti", at, corners))
-        area.append(size * weight)
-    return _statistics(np.concatenate(stress), np.concatenate(place)[:, 1:], np.concatenate(area))
+    some = elements.take(chosen)
+    at, rule = quadrature(SLAB_ORDER)
+    inverse, determinant = jacobians(some, at)
+    place = np.einsum("qa,eai->eqi", shapes(at), some.points[some.nodes])
+    away = np.abs(place[..., 0] - x) / (thickness / 2)
+    window = np.where(away < 1, (1 + np.cos(np.pi * away)) / thickness, 0.0)
+    stress = _sigma_xx(some, slopes(at)[None] @ inverse, library, states)
+    inside = window.ravel() > 0
+    return _statistics(
+        stress.reshape(-1, states.shape[1])[inside],
+        place.reshape(-1, 3)[inside, 1:],
+        (window * determinant * rule).ravel()[inside],
+    )
 
 
-def plane_cut(elements: Elements, x: float) -> tuple[Ints, Floats]:
-    """Triangles of the plane's cut: the element (t,) of each, and its corners' barycentric coordinates (t, 3, 4)."""
-    distance = elements.points[elements.nodes[:, :4], 0] - x
-    order = np.argsort(distance, axis=1)
-    behind = (distance < 0).sum(axis=1)
-    owners, corners = [], []
-    for count, edges in (
-        (1, ((0, 1), (0, 2), (0, 3))),
-        (3, ((3, 0), (3, 1), (3, 2))),
-        (2, ((0, 2), (0, 3), (1, 3))),
-        (2, ((0, 2), (1, 3), (1, 2))),
-    ):
-        chosen = np.flatnonzero(behind == count)
-        bary = np.zeros((len(chosen), 3, 4))
-        rows = np.arange(len(chosen))
-        for k, (i, j) in enumerate(edges):
-            first, second = order[chosen, i], order[chosen, j]
-            low, high = distance[chosen, first], distance[chosen, second]
-            share = low / (low - high)
-            bary[rows, k, first] = 1 - share
-            bary[rows, k, second] = share
-        owners.append(chosen)
-        corners.append(bary)
-    return np.concatenate(owners), np.concatenate(corners)
-
-
-def _triangle_rule(order: int) -> list[tuple[Floats, float]]:
-    """Barycentric points (3,) and weights (of twice the area, summing to a half) of a rule on the triangle."""
-    from skfem.quadrature import get_quadrature
-    from skfem.refdom import RefTri
-
-    at, weights = get_quadrature(RefTri, order)
-    bary = np.column_stack([1 - at.sum(axis=0), at.T])
-    return [(row, float(weight)) for row, weight in zip(bary, weights, strict=True)]
-
-
-def _sigma_xx(elements: Elements, at: Floats, library: Library, states: Floats) -> Floats:
-    """σ_xx (t, k) of each element at its own reference point (t, 3)."""
-    slope = slopes(at)
-    jacobian = np.einsum("tai,tap->tip", elements.points[elements.nodes], slope)
-    gradient = np.einsum("tap,tpi->tai", slope, np.linalg.inv(jacobian))
-    rows = 3 * elements.nodes[:, :, None] + np.arange(3)
-    nodes, inverse = np.unique(rows, return_inverse=True)
-    motion = (np.asarray(library.motion[nodes]) @ states)[inverse.reshape(rows.shape)]
-    full = np.einsum("tad,tack->tkdc", gradient, motion)
-    stress = hooke(full, elements.lame[:, None], elements.shear[:, None])[..., 0]
-    heat = states[6 * len(library.attachments) + elements.volume_of]
-    free: Floats = stress - ((3 * elements.lame + 2 * elements.shear) * elements.expansion)[:, None] * heat
-    return free
+def _sigma_xx(elements: Elements, gradient: Floats, library: Library, states: Floats) -> Floats:
+    """σ_xx (e, q, k) from the gradients (e, q, 10, 3) of the shape functions."""
+    nodes, local = np.unique(elements.nodes, return_inverse=True)
+    rows = (3 * nodes[:, None] + np.arange(3)).ravel()
+    motion = (np.asarray(library.motion[rows]) @ states).reshape(len(nodes), 3, -1)
+    strain = np.einsum("eqac,eack->eqck", gradient, motion[local.reshape(elements.nodes.shape)], optimize=True)
+    lame, shear = elements.lame[:, None, None], elements.shear[:, None, None]
+    heat = states[6 * len(library.attachments) + elements.volume_of][:, None, :]
+    free = (3 * lame + 2 * shear) * elements.expansion[:, None, None] * heat
+    result: Floats = lame * strain.sum(axis=2) + 2 * shear * strain[:, :, 0] - free
+    return result
 
 
 def _statistics(stress: Floats, place: Floats, area: Floats) -> SectionStress:
@@ -193,13 +169,13 @@ def _statistics(stress: Floats, place: Floats, area: Floats) -> SectionStress:
     arm = place - centroid
     low, high = place[:, 1].min(), place[:, 1].max()
     fifth = (high - low) / 5
-    top, bottom = place[:, 1] > high - fifth, place[:, 1] < low + fifth
+    top, bottom = area * (place[:, 1] > high - fifth), area * (place[:, 1] < low + fifth)
     return SectionStress(
         area=total,
         centroid=centroid,
         force=area @ stress,
         about_y=(area * arm[:, 1]) @ stress,
         about_z=(area * arm[:, 0]) @ stress,
-        top=(area * top) @ stress / (area * top).sum(),
-        bottom=(area * bottom) @ stress / (area * bottom).sum(),
+        top=top @ stress / top.sum(),
+        bottom=bottom @ stress / bottom.sum(),
     )

@@ -9,8 +9,7 @@ import pytest
 from boxes import box_block
 
 from blockload.errors import BlockError
-from blockload.response.cuts import plane_cut, section_cut, section_stress
-from blockload.response.elements import elements_of
+from blockload.response.cuts import section_cut, section_stress
 from blockload.response.respond import solve
 
 RNG = np.random.default_rng(5)
@@ -74,8 +73,8 @@ def test_first_moment_of_the_stress_is_minus_the_sagging_moment(x: float) -> Non
     cut = section_cut(block, library, weights, x, np.array([x, *section.centroid]))
 
     assert -cut.found[0, 4] == pytest.approx(500.0)
-    assert section.area == pytest.approx(0.4 * 0.3)
-    np.testing.assert_allclose(section.centroid, [0, 0.15], atol=1e-9)
+    assert section.area == pytest.approx(0.4 * 0.3, rel=1e-3)
+    np.testing.assert_allclose(section.centroid, [0, 0.15], atol=1e-3)
     assert section.about_y[0] == pytest.approx(-500.0, rel=0.005)
     assert abs(section.force[0]) < 0.005 * 500 / 0.1
     assert section.top[0] < 0 < section.bottom[0]
@@ -85,7 +84,6 @@ def test_first_moment_of_the_stress_is_minus_the_sagging_moment(x: float) -> Non
 
 
 def test_pulling_the_block_gives_its_mean_stress() -> None:
-    """Stress is in equilibrium on average only: three elements over the height leave two parts in a thousand."""
     block = box_block()
     library = solve(block)
     weights = np.zeros(library.unit_count)
@@ -98,15 +96,24 @@ def test_pulling_the_block_gives_its_mean_stress() -> None:
     assert abs(section.about_y[0]) < 0.005 * 4000 * 0.3
 
 
-@pytest.mark.parametrize("x", [-0.599, -0.5, -0.41234, -1e-6])
-def test_the_cut_of_a_box_has_its_area_also_along_element_faces(x: float) -> None:
-    some = elements_of(box_block())
-    owner, bary = plane_cut(some, x)
-    corners = np.einsum("tvc,tci->tvi", bary, some.points[some.nodes[owner, :4]])
-    area = np.linalg.norm(np.cross(corners[:, 1] - corners[:, 0], corners[:, 2] - corners[:, 0]), axis=1).sum() / 2
+@pytest.mark.parametrize("x", [-0.5, -0.41234, -0.2])
+def test_the_slab_has_the_area_and_centroid_of_the_section(x: float) -> None:
+    block = box_block()
+    library = solve(block)
+    section = section_stress(block, library, np.zeros(library.unit_count), x, 0.15)
 
-    np.testing.assert_allclose(corners[..., 0], x, atol=1e-12)
-    assert area == pytest.approx(0.4 * 0.3)
+    assert section.area == pytest.approx(0.4 * 0.3, rel=0.01)
+    np.testing.assert_allclose(section.centroid, [0, 0.15], atol=1e-3)
+
+
+def test_a_block_held_by_nothing_feels_no_heat_on_the_section() -> None:
+    block = box_block()
+    library = solve(block)
+    rise = np.zeros(library.unit_count)
+    rise[-1] = 100.0
+    section = section_stress(block, library, rise, -0.3)
+
+    assert abs(section.force[0]) < 1e-6 * 440e6 * 0.12
 
 
 @pytest.mark.parametrize("cut", [section_cut, section_stress])
