@@ -51,7 +51,8 @@ def _rear_stud(front: StudTable, rear: StudTable | None, notes: Notes) -> StudTa
     over = {"preload": None, "grip": None, **own} if rear is not None and _another(rear) else own
     taken = [key for key in StudTable.model_fields if key not in over and getattr(front, key) is not None]
     if taken:
-        notes.default("faces.rear.stud", f"as the front face's: {', '.join(taken)}", "one stud for both faces; unsourced")
+        value = f"as the front face's: {', '.join(taken)}"
+        notes.default("faces.rear.stud", value, "one stud for both faces; unsourced")
     return front.model_copy(update=over)
 
 
