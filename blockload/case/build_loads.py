@@ -44,6 +44,8 @@ def _device(name: str, item: DeviceTable, folder: Path, air_density: float, note
     if item.map is None and not any(areas.values()) and item.downforce is None and item.drag is None:
         remedy = f'add downforce_area = "1.3 m^2" or drag_area under [{key}]'
         notes.problem(key, "the device has neither downforce nor drag", "an area, a force at a speed, or a map", remedy)
+    if item.map is not None and any(areas.values()):
+        notes.default(f"{key}.downforce_area", "not used", "the map's figures stand in its place")
     if item.attachment is not None and item.on != "engine":
         found = f"attachment names a place on the block, but the device is on the {item.on}"
         notes.problem(f"{key}.attachment", found, 'on = "engine"', "take it out, or set on")
@@ -88,6 +90,10 @@ def build_aero_total(
         share_includes_drag_moment=item.share_includes_drag_moment,
         drag=item.drag,
     )
+    if not devices and table.aero_split and item.drag is None:
+        notes.default("aero_total.drag", "0 kN", "unsourced: not given, so that no drag acts on the car")
+    if devices and table.aero_split:
+        notes.default("aero_split", "not used", "devices are given, so that nothing is left to split")
     if devices and all(device.map is None for device in devices):
         _compare(total, devices, axles, 0.5 * air_density * item.at_speed**2, notes)
     return total

@@ -21,7 +21,7 @@ def case_tables(case: Case) -> tuple[Table, ...]:
     """What the aero of a case adds up to, and what each device does to the faces; nothing for a car without."""
     if not case.devices and not only_totals(case):
         return ()
-    return totals_table(case, three_speeds(case)), influence_table(case), moved_table(case)
+    return totals_table(case, three_speeds(case)), influence_table(case), *stud_tables(case), moved_table(case)
 
 
 def three_speeds(case: Case) -> tuple[float, ...]:
@@ -67,6 +67,21 @@ def influence_table(case: Case) -> Table:
     columns = ("device", "carried by", "face", *SECTION, "stud moved most, kN")
     note = "kN and kN·m per kN of downforce on the device, the wheels answering; studs as of a rigid face."
     return table("One kilonewton on each device", columns, rows, note)
+
+
+def stud_tables(case: Case) -> tuple[Table, ...]:
+    """Axial force of every stud per kilonewton of downforce on each device, a table for each face."""
+    found = per_kilonewton(case)
+    result = []
+    for name in FACES:
+        rows = [
+            (plain_name(device), *(fixed(a, 3, scale=1e3, sign=True) for a in found.axial[name][k]))
+            for k, device in enumerate(found.devices)
+        ]
+        columns = ("device", *(stud.name for stud in case.faces[name].studs))
+        note = "Axial kN per kN of downforce, + pulled; a rigid face on equal studs, before preload."
+        result.append(table(f"Studs of the {name} face per kilonewton on each device", columns, rows, note))
+    return tuple(result)
 
 
 def moved_table(case: Case) -> Table:

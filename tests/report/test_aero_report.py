@@ -16,7 +16,15 @@ from blockload.case.reading import read
 from blockload.errors import CaseError
 from blockload.report.aero_report import AeroReading, aero_against
 from blockload.report.aero_results import aero_written
-from blockload.report.aero_tables import bounds_table, influence_table, load_case_tables, moved_table, totals_table
+from blockload.report.aero_tables import (
+    bounds_table,
+    case_tables,
+    influence_table,
+    load_case_tables,
+    moved_table,
+    stud_tables,
+    totals_table,
+)
 
 CASES = Path(__file__).parents[2] / "cases"
 DEVICES = "device, downforce [m^2], drag [m^2]\n"
@@ -151,7 +159,29 @@ def test_results_carry_ride_heights_bounds_and_nothing_else() -> None:
 
 
 def test_tables_of_a_case_name_every_device() -> None:
-    for table in (influence_table(CAR), moved_table(CAR)):
+    for table in (influence_table(CAR), moved_table(CAR), *stud_tables(CAR)):
         assert {row[0] for row in table.rows} == {"front wing", "floor", "body", "diffuser", "rear wing"}
     assert totals_table(CAR, [75.0]).rows[0][1:5] == ("18.06", "4.56", "0.399", "0.446")
     assert "[+0.636]" in next(row for row in moved_table(CAR).rows if row[0] == "floor")
+
+
+def test_tables_of_an_open_car_name_every_carrier() -> None:
+    case = read(CASES / "demo-totals.toml")
+
+    assert [len(table.rows) for table in case_tables(case)] == [3, 10, 5, 5, 5]
+    assert case_tables(replace(CAR, devices=())) == ()
+
+
+def test_figures_that_are_not_used_are_said(tmp_path: Path) -> None:
+    """An area beside a map, a split beside devices, a drag that nobody gave."""
+    mapped = read(CASES / "demo-map.toml")
+    text = (CASES / "demo-totals.toml").read_text(encoding="utf-8").replace('drag = "4.556 kN"\n', "")
+    (tmp_path / "open.toml").write_text(text, encoding="utf-8")
+    open_one = read(tmp_path / "open.toml")
+    both = read(CASES / "demo.toml", ['aero_split.nose.on="tub"', 'aero_split.nose.at="(0.5, 0, 0.2) m"'])
+    said = {item.key: item.value for case in (mapped, open_one, both) for item in case.defaults}
+
+    assert said["aero.floor.downforce_area"] == "not used"
+    assert said["aero_total.drag"] == "0 kN"
+    assert said["aero_split"] == "not used"
+    assert balance(open_one).drag.max() == 0.0
