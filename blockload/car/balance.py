@@ -24,9 +24,11 @@ from .engine_loads import engine_loads
 from .faces import chain_loads, face_loads, front_rear_gap
 from .manoeuvres import Inputs, read
 from .model import LoadCases
+from .point_forces import engine_points, point_terms
 from .residual import refuse, residuals
 from .ride_height import in_the_air
 from .sources import elementary, source_names
+from .supports import engine_supports, held_loads, held_tyres, hold, support_terms
 from .suspension import axle_maps, body_wrenches, corner_wrenches, link_loads
 from .terms import body_terms, crank_terms, face_terms, pickup_terms, wheel_terms
 from .tyres import tyre_use
@@ -49,7 +51,8 @@ def balance(
         case = with_middle_split(case, extremes)
     check_devices(case)
     refuse_wrong_total(case)
-    inputs = read(case, case.manoeuvres if manoeuvres is None else manoeuvres)
+    run = case.manoeuvres if manoeuvres is None else manoeuvres
+    inputs = read(case, run)
     car, frame = masses(case), chassis(case)
     inputs = in_the_air(case, inputs, car)
     names = source_names(case, inputs)
@@ -58,7 +61,9 @@ def balance(
     if not all(kept.all() for kept in inputs.keep.values()):
         whole = elementary(case, inputs.whole(), names, car, frame)
 
-    tyres = tyre_answer(case, inputs, loads, whole, block_torsion)
+    held = hold(inputs, loads, frame)
+    tyres = held_tyres(tyre_answer(case, inputs, loads, whole, block_torsion), held)
+    loads = held_loads(loads, held)
     torque = crank_torque(case, inputs, frame, tyres.along)
     couple = crank_couples(case, inputs, names, torque)
     corners = corner_loads(case, inputs, frame, loads.loads[:, :, 3:], tyres.force)
@@ -70,6 +75,8 @@ def balance(
     wheel_force = sealed(tyres.force + loads.contact)
     terms = (
         *body_terms(case, inputs, car, loads.motion.sum(axis=1)),
+        *point_terms(inputs),
+        *support_terms(held),
         *crank_terms(car, couple[:, names.index("crank")], couple[:, names.index("crank_inertia")]),
         *wheel_terms(frame, wheel_force, corners.shaft.sum(axis=1)),
         *pickup_terms(maps, wrenches.sum(axis=1)),
@@ -93,7 +100,11 @@ def balance(
         links=link_loads(maps, wrenches),
         overall_ratio=inputs.ratio,
         tyre_use=sealed(tyre_use(case.tyres, wheel_force.sum(axis=1))),
-        engine_loads=engine_loads(case, inputs, frame, maps, corners.shaft, wrenches),
+        engine_loads=(
+            *engine_loads(case, inputs, frame, maps, corners.shaft, wrenches),
+            *engine_points(inputs, names),
+            *engine_supports(held),
+        ),
         terms=terms,
         residual=sealed(residual.max(axis=1)),
         front_rear_gap=sealed(front_rear_gap(chain)),
@@ -103,6 +114,10 @@ def balance(
         ride_height=frozen(inputs.air.ride_height),
         outside_map=inputs.air.outside,
         aero_bounds=None if extremes is None else bounds(extremes, faces),
+        kind=tuple(it.kind for it in run),
+        fatigue_exempt=tuple(it.fatigue_exempt for it in run),
+        group=tuple(it.group for it in run),
+        basis=tuple(it.basis for it in run),
     )
 
 

@@ -13,13 +13,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ..arrays import Floats, frozen
-from ..case.model import CORNERS, Case, Manoeuvre
+from ..case.model import CARRIERS, CORNERS, Case, Manoeuvre, PointForce, Support
 from ..errors import CaseError, nearest
 from .aero import Air, constant_air
 
 DRIVEN = {"front": (1.0, 0.0), "rear": (0.0, 1.0)}  # shares of the driving force on the front and rear axle
 KINDS = ("downforce", "drag", "weight", "inertia", "crank", "crank_inertia", "extra")
 DRIVES = ("hold_speed", "accelerate", "brake", "coast")
+_DOWN = (0.0, 0.0, -1.0)
 _AT_REST = 1e-9  # m/s^2: an acceleration along x below this counts as none
 
 
@@ -29,7 +30,8 @@ class Inputs:
 
     speed, pressure (dynamic, Pa), ratio (nan: not given), crank_rate (rad/s^2), coast, brake: (C,);
     acceleration (C, 3); extra (C, 4, 3), at the contact points; yaw, steer (rad) and state (None: none named) say where
-    aero maps are read, and air what they give; keep maps each kind of load to (C,) ones and zeros.
+    aero maps are read, and air what they give; keep maps each kind of load to (C,) ones and zeros; down (C, 3) is the
+    direction of gravity; supports hold the car instead of its wheels.
     """
 
     names: tuple[str, ...]
@@ -46,6 +48,9 @@ class Inputs:
     state: tuple[str | None, ...]
     air: Air
     keep: Mapping[str, Floats]
+    down: Floats
+    point_forces: tuple[tuple[PointForce, ...], ...]
+    supports: tuple[tuple[Support, ...], ...]
 
     def whole(self) -> Inputs:
         """The same manoeuvres with every kind of load kept."""
@@ -81,6 +86,9 @@ def read(case: Case, manoeuvres: Sequence[Manoeuvre]) -> Inputs:
         state=tuple(m.state for m in manoeuvres),
         air=constant_air(case, len(manoeuvres)),
         keep={kind: np.array([kind in kinds for kinds in kept], dtype=float) for kind in KINDS},
+        down=np.array([_DOWN if m.down is None else m.down for m in manoeuvres], dtype=float),
+        point_forces=tuple(m.point_forces for m in manoeuvres),
+        supports=tuple(m.supports for m in manoeuvres),
     )
 
 
@@ -113,7 +121,19 @@ def _check(case: Case, manoeuvre: Manoeuvre) -> None:
     for corner in manoeuvre.extra_wheel_force:
         if corner not in CORNERS:
             raise CaseError(f"{where} extra_wheel_force", repr(corner), ", ".join(CORNERS), nearest(corner, CORNERS))
+    if manoeuvre.point_forces or manoeuvre.supports:
+        _check_places(manoeuvre, where)
     _check_crank(case, manoeuvre, where)
+
+
+def _check_places(manoeuvre: Manoeuvre, where: str) -> None:
+    for force in manoeuvre.point_forces:
+        if force.on not in CARRIERS:
+            found = f"{force.name} is on {force.on!r}"
+            raise CaseError(f"{where} point_forces", found, ", ".join(CARRIERS), nearest(force.on, CARRIERS))
+    if manoeuvre.supports and (manoeuvre.extra_wheel_force or manoeuvre.speed):
+        found = "a car that is held by supports, yet rolls or is struck at a wheel"
+        raise CaseError(f"{where} supports", found, "supports at rest", "use point_forces for what acts on a held car")
 
 
 def _check_crank(case: Case, manoeuvre: Manoeuvre, where: str) -> None:

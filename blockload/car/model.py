@@ -104,6 +104,8 @@ class LoadCases:
     ride_height (C, 2), front and rear, is nan where no aero map asks for it; outside_map (C,) says which map was read
     beyond its grid, and where; aero_bounds is there where only totals of the aero are known, the case itself then
     standing at the mean of the extreme splits.
+    kind (C,) is "service" or "limit"; fatigue_exempt (C,) ones are no cycles; group (C,) is the standard situation's
+    own, None for the case file's manoeuvres; basis (C,) says where the figures of a case come from.
     """
 
     names: tuple[str, ...]
@@ -131,6 +133,10 @@ class LoadCases:
     ride_height: Floats = field(default_factory=lambda: np.zeros((0, 2)))
     outside_map: tuple[str, ...] = ()
     aero_bounds: AeroBounds | None = None
+    kind: tuple[str, ...] = ()
+    fatigue_exempt: tuple[bool, ...] = ()
+    group: tuple[str | None, ...] = ()
+    basis: tuple[str | None, ...] = ()
 
     @property
     def wheels(self) -> Floats:

@@ -21,6 +21,7 @@ from .bodies import BODY_SOURCES, Chassis, Masses
 from .crank import inertia_couple
 from .manoeuvres import Inputs
 from .model import BODIES
+from .point_forces import add_points, point_names
 from .wrench import wrench
 
 ENGINE = BODIES.index("engine")
@@ -33,7 +34,7 @@ class Elementary:
     loads (C, S, B, 6) about the origin; motion (C, S, 6): acceleration of the car's CG and angular acceleration that
     belong to the source; engine_motion (C, S, 6): a - g and alpha of the engine as far as the source contains it;
     contact (C, S, 4, 3): extra wheel forces; unsprung (C, S, 2): lateral d'Alembert force on each axle's corners;
-    moving (S,): sources that move the rigid car instead of being answered by the wheels.
+    moving (C, S): sources that move the rigid car instead of being answered by the wheels.
     """
 
     loads: Floats
@@ -46,7 +47,7 @@ class Elementary:
     @property
     def answered(self) -> Floats:
         """Loads (C, S, B, 6) that the wheels answer: those of extra forces move the rigid car instead."""
-        result: Floats = self.loads * ~self.moving[:, None, None]
+        result: Floats = self.loads * ~self.moving[..., None, None]
         return result
 
 
@@ -55,7 +56,7 @@ def source_names(case: Case, inputs: Inputs) -> tuple[str, ...]:
     used = np.abs(inputs.extra).max(axis=(0, 2)) > 0
     extras = (f"extra.{corner}" for corner, there in zip(CORNERS, used, strict=True) if there)
     devices = (f"aero.{device.name}" for device in case.devices)
-    return (*devices, *BODY_SOURCES, "crank", "crank_inertia", *extras)
+    return (*devices, *BODY_SOURCES, "crank", "crank_inertia", *extras, *point_names(inputs))
 
 
 def elementary(case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses, frame: Chassis) -> Elementary:
@@ -67,12 +68,13 @@ def elementary(case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses, 
         engine_motion=np.zeros((cases, count, 6)),
         contact=np.zeros((cases, count, 4, 3)),
         unsprung=np.zeros((cases, count, 2)),
-        moving=np.array([name.startswith("extra.") for name in names]),
+        moving=np.tile([name.startswith("extra.") for name in names], (cases, 1)),
     )
     _add_devices(result, case, inputs, car)
     _add_bodies(result, case, inputs, names, car)
     result.loads[:, names.index("crank_inertia"), ENGINE, 3] = inertia_couple(case, inputs)
     _add_extras(result, inputs, names, car, frame)
+    add_points(result, inputs, names, car, inertia_matrices(car))
     return result
 
 
@@ -111,8 +113,7 @@ def _add_devices(result: Elementary, case: Case, inputs: Inputs, car: Masses) ->
 
 def _add_bodies(result: Elementary, case: Case, inputs: Inputs, names: tuple[str, ...], car: Masses) -> None:
     own = inputs.acceleration * inputs.keep["inertia"][:, None]
-    gravity = np.zeros_like(own)
-    gravity[:, 2] = -case.gravity * inputs.keep["weight"]
+    gravity = case.gravity * inputs.keep["weight"][:, None] * inputs.down
     for name, bodies in BODY_SOURCES.items():
         s = names.index(name)
         for b in bodies:

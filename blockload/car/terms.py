@@ -25,8 +25,7 @@ def body_terms(case: Case, inputs: Inputs, car: Masses, motion: Floats) -> list[
     """Weight, inertia and aero forces, from the car's motion (C, 6)."""
     result = []
     for b, body in enumerate(BODIES):
-        weight = np.zeros((len(inputs.names), 3))
-        weight[:, 2] = -car.mass[b] * case.gravity * inputs.keep["weight"]
+        weight = car.mass[b] * case.gravity * inputs.keep["weight"][:, None] * inputs.down
         arm = np.broadcast_to(car.cg[b] - car.car_cg, weight.shape)
         inertia = -car.mass[b] * (motion[:, :3] + np.cross(motion[:, 3:], arm))
         result.append(_term(body, "weight", car.cg[b], weight))
