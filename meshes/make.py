@@ -23,67 +23,41 @@ def _pads() -> tuple[PadShape, ...]:
     pads = []
     for letter, side, sign in (("L", "left", 1.0), ("R", "right", -1.0)):
         head = f"head_{side}"
-        common = {"radius": 0.019}
+        spine = Rib(toward=(-sign * UP, -UP), above=0.008, reach=0.011, thickness=0.028, length=0.260)
+        ear = Rib(toward=(-sign, 0.0), above=0.008, reach=0.078, thickness=0.030, length=0.195)
         pads += [
-            PadShape(
-                face="front",
-                name=f"T{letter}",
-                at=(sign * 0.240, 0.470),
-                volume=head,
-                boss=0.030,
-                column=0.060,
-                depth=0.150,
-                tail=0.020,
-                rib=Rib(toward=(-sign * UP, -UP), above=0.014, reach=0.0155, thickness=0.032, length=0.240),
-                **common,
-            ),
-            PadShape(
-                face="front",
-                name=f"B{letter}",
-                at=(sign * 0.170, 0.080),
-                volume="sump",
-                boss=0.026,
-                column=0.050,
-                depth=0.130,
-                tail=0.018,
-                **common,
-            ),
-            PadShape(
-                face="rear",
-                name=f"T{letter}",
-                at=(sign * 0.250, 0.400),
-                volume=head,
-                boss=0.030,
-                column=0.040,
-                depth=0.110,
-                tail=0.022,
-                **common,
-            ),
-            PadShape(
-                face="rear",
-                name=f"M{letter}",
-                at=(sign * 0.200, 0.240),
-                volume="block",
-                boss=0.026,
-                column=0.050,
-                depth=0.130,
-                tail=0.019,
-                rib=Rib(toward=(-sign, 0.0), above=0.014, reach=0.062, thickness=0.034, length=0.240),
-                **common,
-            ),
-            PadShape(
-                face="rear",
-                name=f"B{letter}",
-                at=(sign * 0.130, 0.060),
-                volume="sump",
-                boss=0.026,
-                column=0.050,
-                depth=0.130,
-                tail=0.018,
-                **common,
-            ),
+            _pad("front", f"T{letter}", (sign * 0.240, 0.470), head, boss=0.030, depth=0.188, tail=0.012, rib=spine),
+            _pad("front", f"B{letter}", (sign * 0.170, 0.080), "sump", boss=0.028, depth=0.140),
+            _pad("rear", f"T{letter}", (sign * 0.250, 0.400), head, boss=0.032, depth=0.130),
+            _pad("rear", f"M{letter}", (sign * 0.200, 0.240), "block", boss=0.028, depth=0.150, rib=ear),
+            _pad("rear", f"B{letter}", (sign * 0.130, 0.060), "sump", boss=0.029, depth=0.140),
         ]
     return tuple(pads)
+
+
+def _pad(
+    face: str,
+    name: str,
+    at: tuple[float, float],
+    volume: str,
+    *,
+    boss: float,
+    depth: float,
+    tail: float = 0.018,
+    rib: Rib | None = None,
+) -> PadShape:
+    return PadShape(
+        face=face,
+        name=name,
+        at=at,
+        volume=volume,
+        radius=0.019,
+        boss=boss,
+        column=0.030,
+        depth=depth,
+        tail=tail,
+        rib=rib,
+    )
 
 
 DEMO = VeeShape(
@@ -92,22 +66,22 @@ DEMO = VeeShape(
     crank_z=0.200,
     vee_angle=math.pi / 2,
     cylinders_per_bank=4,
-    bore=0.096,
+    bore=0.100,
     bore_spacing=0.118,
-    bore_end=0.056,
+    bore_end=0.050,
     first_main=0.062,
     stagger=0.010,
-    deck=0.210,
-    bank_half_width=0.058,
+    deck=0.202,
+    bank_half_width=0.057,
     main_bore=0.066,
-    bulkhead=0.022,
+    bulkhead=0.014,
     cap_half_width=0.066,
     cap_depth=0.054,
-    chamber_roof=0.088,
+    chamber_roof=0.096,
     chamber_top_z=0.278,
-    valley_z=0.300,
-    wall=0.009,
-    end_wall=0.013,
+    valley_z=0.294,
+    wall=0.007,
+    end_wall=0.010,
     recess=0.006,
     nose_bore=0.080,
     tail_bore=0.104,
@@ -116,24 +90,26 @@ DEMO = VeeShape(
     shoulder_z=0.245,
     parting_z=0.130,
     flange=0.012,
+    side_rib=0.008,
     sump_z=0.030,
-    sump_floor=0.009,
-    sump_rib=0.012,
+    sump_floor=0.008,
+    sump_rib=0.010,
     sump_rib_z=0.078,
     head_half_width=0.072,
-    head_height=0.140,
-    cam_floor=0.046,
-    head_wall=0.009,
-    cam_wall=0.014,
-    port_radius=0.019,
-    port_depth=0.045,
-    port_height=0.026,
+    head_height=0.152,
+    cam_floor=0.042,
+    cam_chamfer=0.022,
+    head_wall=0.008,
+    cam_wall=0.010,
+    port_wide=0.050,
+    port_tall=0.020,
+    port_at=0.016,
+    port_depth=0.040,
     pads=_pads(),
 )
+THIN = replace(DEMO, wall=0.005, head_wall=0.005, end_wall=0.007, bulkhead=0.010, cam_wall=0.007)
 
-THIN = replace(DEMO, wall=0.005, head_wall=0.005, end_wall=0.008, bulkhead=0.014, cam_wall=0.008)
-
-SHAPES = {"demo-v8": (DEMO, 0.040), "demo-v8-thin": (THIN, 0.040)}
+SHAPES = {"demo-v8": (DEMO, 0.060), "demo-v8-thin": (THIN, 0.060)}
 
 
 def main(arguments: list[str]) -> int:

@@ -18,10 +18,13 @@ import numpy as np
 from netgen.occ import OCCGeometry
 
 from .shape import VeeShape, shape_from
-from .solids import VeeSolids, glued
+from .solids import VeeSolids, curved_radii, glued
 
 TO_VTK = [0, 2, 1, 3, 5, 7, 4, 6, 9, 8]
 """netgen's mid nodes (01)(02)(03)(12)(13)(23) to (01)(12)(02)(03)(13)(23), corners 1, 2 swapped: all come negative."""
+
+CURVED_SIZE = 0.55
+"""Element size on a curved face over its radius: eleven curved sides around, the area true to 1e-4."""
 
 
 def mesh_arrays(shape: VeeShape, size: float, settings: dict[str, Any]) -> dict[str, Any]:
@@ -32,6 +35,10 @@ def mesh_arrays(shape: VeeShape, size: float, settings: dict[str, Any]) -> dict[
         chord = math.dist(tuple(edge.start), tuple(edge.end))
         if abs(edge.mass - chord) > 1e-6 * edge.mass:
             edge.maxh = min(size, edge.mass / 3.0)
+    for face in compound.faces:
+        for kind, radius in curved_radii(shape).items():
+            if (face.name or "").startswith(kind):
+                face.maxh = min(size, CURVED_SIZE * radius)
     mesh = OCCGeometry(compound).GenerateMesh(maxh=size, segmentsperedge=1, **settings)
     facets = mesh.Elements2D().NumPy()
     corners, faces = facets["nodes"][:, :3].astype(np.int64) - 1, facets["index"].astype(np.int64) - 1

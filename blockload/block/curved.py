@@ -94,7 +94,7 @@ def straightened(points: Floats, elements: Ints) -> tuple[Floats, int]:
     moved = np.zeros(len(points), dtype=bool)
     points = points.copy()
     ends = np.array(EDGES)
-    for step in (0.5, 0.5, 0.5, 1.0, 1.0, 1.0, 1.0):
+    for step in (*[0.15] * 10, *[0.4] * 5, *[1.0] * 6):
         bad = determinant_bound(points, elements) < SAFE_SHARE * straight
         if not bad.any():
             break

@@ -64,7 +64,11 @@ def mesh_shape(shape: VeeShape, *, size: float, coarse: bool = False, time_limit
 def _child(shape: VeeShape, size: float, settings: Mapping[str, float], time_limit: float) -> dict[str, Any]:
     with tempfile.TemporaryDirectory(prefix="blockload-mesh-") as folder:
         source, target = Path(folder, "shape.json"), Path(folder, "mesh.npz")
-        order = {"shape": asdict(shape), "size": 1e3 * size, "settings": {**settings, "closeedgefac": None}}
+        order = {
+            "shape": asdict(shape),
+            "size": 1e3 * size,
+            "settings": {**settings, "closeedgefac": None, "optsteps3d": 4},
+        }
         source.write_text(json.dumps(order))
         command = [sys.executable, "-m", "blockload.block.child", str(source), str(target)]
         try:

@@ -37,7 +37,7 @@ class Rib:
 class PadShape:
     """A stud's pad: a disc of `radius` in the face plane at (y, z), ending a boss of one volume.
 
-    The boss widens to `boss` just behind the face, keeps it for `column` and fades to `tail` at `depth`.
+    The boss widens from the pad to `boss` at depth `column` and fades to `tail` at `depth`.
     """
 
     face: str
@@ -91,6 +91,7 @@ class VeeShape:
     shoulder_z: float
     parting_z: float
     flange: float
+    side_rib: float
     sump_z: float
     sump_floor: float
     sump_rib: float
@@ -98,11 +99,13 @@ class VeeShape:
     head_half_width: float
     head_height: float
     cam_floor: float
+    cam_chamfer: float
     head_wall: float
     cam_wall: float
-    port_radius: float
+    port_wide: float
+    port_tall: float
+    port_at: float
     port_depth: float
-    port_height: float
     pads: tuple[PadShape, ...]
 
     def __post_init__(self) -> None:

@@ -17,8 +17,6 @@ from .shape import SIDES, PadShape, VeeShape
 
 MM = 1e3
 Point = tuple[float, float]
-_FLARE = 0.5
-"""Steepness of a boss between its pad and its column: growth of the radius per depth."""
 
 
 class VeeSolids:
@@ -85,12 +83,15 @@ class VeeSolids:
     def _block(self) -> Any:
         s = self.shape
         parting, shoulder, valley = MM * s.parting_z, MM * s.shoulder_z, MM * s.valley_z
-        half, deck = MM * s.bank_half_width, MM * s.deck
+        half, deck, wall = MM * s.bank_half_width, MM * s.deck, MM * s.wall
         front, rear = self.outer_front, self.outer_rear
         solid = self.upright(self.trapezoid(0.0, front, rear), parting, shoulder)
         solid += self.upright(self.trapezoid(-MM * s.flange, front, rear), parting, parting + MM * s.flange)
+        for station in s.mains:
+            start, stop = MM * (station - s.bulkhead / 2), MM * (station + s.bulkhead / 2)
+            solid += self.upright(self.trapezoid(-MM * s.side_rib, start, stop), parting, shoulder)
         for side in SIDES:
-            solid += self.in_bank(side, (0.25 * deck, deck), (-half, half), (front, rear))
+            solid += self.in_bank(side, (0.1 * deck, deck), (-half, half), (front, rear))
         inside = half - 6.0
         (y0, z0), (y1, z1) = (self.bank_point("left", a, -inside) for a in (0.5 * deck, 0.9 * deck))
         width = y0 + (y1 - y0) * (valley - z0) / (z1 - z0)
@@ -99,8 +100,9 @@ class VeeSolids:
         for cavity in self._crank_chambers():
             solid -= cavity
         for side in SIDES:
-            solid -= self.in_bank(side, (MM * s.bore_end, deck - 12), (12 - half, half - 12), self._chest(0))
-            solid -= self.in_bank(side, (MM * s.bore_end, deck - 12), (12 - half, half - 12), self._chest(1))
+            for bay in (0, -1):
+                chest = self._bays(MM * s.bulkhead)[bay]
+                solid -= self.in_bank(side, (MM * s.bore_end, deck - 12), (wall - half, half - wall), chest)
             for i, station in enumerate(s.bores(side), start=1):
                 bore = self.bore_cylinder(side, MM * station, MM * s.bore / 2, (MM * s.bore_end, deck + 5))
                 solid -= _named(bore, f"bore_{side[0].upper()}{i}")
@@ -137,23 +139,26 @@ class VeeSolids:
         s = self.shape
         half, deck, top = MM * s.head_half_width, MM * s.deck, MM * (s.deck + s.head_height)
         wall = MM * s.head_wall
-        solid = self.in_bank(side, (deck, top), (-half, half), (self.outer_front, self.outer_rear))
+        foot = MM * s.bank_half_width
+        waist = deck + MM * s.cam_floor
+        step = waist - (half - foot)
+        cut = MM * s.cam_chamfer
+        outline = [(deck, foot), (step, foot), (waist, half), (top - cut, half), (top, half - cut)]
+        outline += [(top, -half), (waist, -half), (step, -foot), (deck, -foot)]
+        solid = self.along_x([self.bank_point(side, *p) for p in outline], self.outer_front, self.outer_rear)
         solid = self._with_ribs(solid, f"head_{side}")
-        floor = deck + MM * s.cam_floor
+        # the chamfer keeps the wall's thickness: its offset moves its ends by wall (√2 − 1)
+        bevel = cut - wall * (2 - math.sqrt(2))
+        hollow = [(waist, half - wall), (top - wall - bevel, half - wall), (top - wall, half - wall - bevel)]
+        hollow += [(top - wall, wall - half), (waist, wall - half)]
         for stations in self._between_cam_walls():
-            solid -= self.in_bank(side, (floor, top - wall), (wall - half, half - wall), stations)
-        _, (cy, cz) = s.bank_axes(side)
-        height = deck + MM * s.port_height
+            solid -= self.along_x([self.bank_point(side, *p) for p in hollow], *stations)
+        centre, tall, wide = deck + MM * s.port_at, MM * s.port_tall / 2, MM * s.port_wide / 2
+        inner = foot - MM * s.port_depth
         for station in s.bores(side):
-            for sign, kind in ((-1.0, "intake"), (1.0, "exhaust")):
-                y, z = self.bank_point(side, height, sign * (half + 5))
-                port = Cylinder(
-                    Pnt(self.front - MM * station, y, z),
-                    Dir(0, -sign * cy, -sign * cz),
-                    MM * s.port_radius,
-                    MM * s.port_depth + 5,
-                )
-                solid -= _named(port, f"head_{side}_{kind}")
+            along, stations = (centre - tall, centre + tall), (MM * station - wide, MM * station + wide)
+            solid -= _named(self.in_bank(side, along, (-half - 5, -inner), stations), f"head_{side}_intake")
+            solid -= _named(self.in_bank(side, along, (inner, half + 5), stations), f"head_{side}_exhaust")
         return self._with_bosses(solid, f"head_{side}")
 
     # --- parts ------------------------------------------------------------------------------------------------
@@ -168,9 +173,6 @@ class VeeSolids:
 
     def _between_cam_walls(self) -> list[Point]:
         return self._bays(MM * self.shape.cam_wall)
-
-    def _chest(self, end: int) -> Point:
-        return self._bays(MM * self.shape.bulkhead)[-end]
 
     def _crank_chambers(self) -> list[Any]:
         s = self.shape
@@ -215,9 +217,7 @@ class VeeSolids:
     def _boss(self, pad: PadShape) -> Any:
         x, into = self._inward(pad)
         y, z = (MM * value for value in pad.at)
-        flare = (pad.boss - pad.radius) / _FLARE
-        profile = [(0.0, 0.0), (0.0, pad.radius), (flare, pad.boss), (pad.column, pad.boss), (pad.depth, pad.tail)]
-        profile.append((pad.depth, 0.0))
+        profile = [(0.0, 0.0), (0.0, pad.radius), (pad.column, pad.boss), (pad.depth, pad.tail), (pad.depth, 0.0)]
         plane = WorkPlane(Axes((x, y, z), n=Dir(0, 0, -into), h=Dir(into, 0, 0)))
         boss = _face(plane, [(MM * d, MM * r) for d, r in profile]).Revolve(Axis((x, y, z), Dir(1, 0, 0)), 360)
         for face in boss.faces:
@@ -242,6 +242,13 @@ class VeeSolids:
         # the plane's second axis, normal × h, is `toward` times `into`
         face = _face(plane, [(d, into * r) for d, r in corners])
         return face.Extrude(Vec(0.0, 2 * half * normal[1], 2 * half * normal[2]))
+
+
+def curved_radii(shape: VeeShape) -> dict[str, float]:
+    """Return the radius of each kind of curved face by the start of its name [mm]."""
+    radii = {"bore_": shape.bore, "main_": shape.main_bore, "nose_": shape.nose_bore, "tail_": shape.tail_bore}
+    bosses = {f"boss_{pad.face}_{pad.name}": 3.0 * pad.boss for pad in shape.pads}
+    return {name: MM * diameter / 2 for name, diameter in {**radii, **bosses}.items()}
 
 
 def glued(solids: dict[str, Any], shape: VeeShape) -> Any:
