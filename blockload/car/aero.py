@@ -83,6 +83,20 @@ class Maps:
             volume[:, k, 0] += value[:, 3:6]
         return area, volume
 
+    def in_pitch(self, ride: Floats) -> Floats:
+        """Force along x and z and moment about y at the origin (C, 3), of the maps that vary with a ride height."""
+        result = np.zeros((len(ride), 3))
+        where = self.places(ride)
+        for device, state in zip(self.devices, self.states, strict=True):
+            if device.table is None or not any(axis in RIDE for axis in device.table.axes):
+                continue
+            value = interpolated(device.table, where, state)
+            x, z = (np.where(np.isnan(value[:, 6 + k]), device.at[k], value[:, 6 + k]) for k in (0, 2))
+            result[:, 0] += value[:, 0]
+            result[:, 1] += value[:, 2]
+            result[:, 2] += value[:, 4] + z * value[:, 0] - x * value[:, 2]
+        return result
+
     def places(self, ride: Floats) -> dict[str, Floats]:
         """Values (C,) of every axis."""
         return {**self.where, "ride_front": ride[:, 0], "ride_rear": ride[:, 1]}

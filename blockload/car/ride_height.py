@@ -24,11 +24,11 @@ from ..errors import BalanceError, CaseError
 from .aero import Air, Maps, outside, read_maps
 from .bodies import AXLES, Masses
 from .manoeuvres import Inputs
-from .wrench import wrench
 
 AGREED = 1e-4  # m: heights that disagree by more are refused
 _CLOSE = 1e-7  # m: where the loop ends, so that mirrored or neighbouring cases agree far beyond the promise
 _STEP = 1e-5  # m, for the slope of the loop
+_FLAT = 1e-6  # determinant below which the loop has no clear answer: the step is cut short instead
 _ROUNDS = 60
 _FURTHEST = 0.02  # m: longest step of one round
 
@@ -65,20 +65,24 @@ def ride_heights(case: Case, inputs: Inputs, car: Masses, maps: Maps) -> Floats:
 
     """
     axles = [_needed(case.axles[name]) for name in AXLES]
-    start = np.array([axle.ride_height for axle in axles], dtype=float)
+    start = np.tile([axle.ride_height or 0.0 for axle in axles], (len(inputs.names), 1))
     springs, tyres = (
         np.array([getattr(axle, key) for axle in axles], dtype=float) for key in ("ride_stiffness", "tyre_stiffness")
     )
-    static = _axle_loads(case, _weight(case, inputs, car, 0.0))
+    standing, moving = _weight(case, inputs, car)
+    static = _axle_loads(case, standing)
     unsprung = 2.0 * np.array([axle.corner.mass for axle in axles]) * inputs.acceleration[:, 2:]
+    steady = _pitch(case, maps, start) - maps.in_pitch(start)
+    slowed = np.where(inputs.coast, car.car_cg[2], 0.0)  # what slows a coasting car acts at its CG
 
     def loop(ride: Floats) -> Floats:
-        load = _axle_loads(case, _weight(case, inputs, car, 1.0) + _air(case, inputs, car, maps, ride))
+        x, z, pitching = (inputs.pressure[:, None] * (steady + maps.in_pitch(ride))).T
+        load = _axle_loads(case, moving + np.stack([z, pitching - slowed * x], axis=1))
         more = load - static
         result: Floats = start - (more - unsprung) / (2.0 * springs) - more / (2.0 * tyres)
         return result
 
-    ride = _settled(loop, np.tile(start, (len(inputs.names), 1)))
+    ride = _settled(loop, start)
     _refuse(loop, ride, inputs.names)
     return ride
 
@@ -98,32 +102,28 @@ def _needed(axle: Axle) -> Axle:
     return axle
 
 
-def _weight(case: Case, inputs: Inputs, car: Masses, moving: float) -> Floats:
-    """Wrench (C, 6) of the car's weight and, as far as it is `moving`, its inertia."""
-    force = -moving * car.total * inputs.acceleration
-    force[:, 2] -= car.total * case.gravity
-    return wrench(force, car.car_cg)
+def _weight(case: Case, inputs: Inputs, car: Masses) -> tuple[Floats, Floats]:
+    """Force along z and moment about y at the origin (C, 2) of the car's weight, and of its weight and inertia."""
+    standing = np.tile((-car.total * case.gravity, car.total * case.gravity * car.car_cg[0]), (len(inputs.names), 1))
+    along, _, up = (-car.total * inputs.acceleration).T
+    inertia = np.stack([up, car.car_cg[2] * along - car.car_cg[0] * up], axis=1)
+    return standing, standing + inertia
 
 
-def _air(case: Case, inputs: Inputs, car: Masses, maps: Maps, ride: Floats) -> Floats:
-    """Wrench (C, 6) of the air at given ride heights, with the slowing it causes where the car coasts."""
-    area, volume = maps.at(ride)
-    force = inputs.pressure[:, None, None] * area.sum(axis=2)
-    moment = inputs.pressure[:, None, None] * volume.sum(axis=2)
+def _pitch(case: Case, maps: Maps, ride: Floats) -> Floats:
+    """Force along x and z and moment about y at the origin (C, 3) of all devices, per dynamic pressure."""
+    area, volume = (part.sum(axis=2) for part in maps.at(ride))
     points = np.array([device.at for device in case.devices])
-    total = wrench(force, points)
-    total[..., 3:] += moment
-    result: Floats = total.sum(axis=1)
-    slowing = np.zeros((len(result), 3))
-    slowing[:, 0] = np.where(inputs.coast, -result[:, 0], 0.0)
-    return result + wrench(slowing, car.car_cg)
+    x, z = area[..., 0], area[..., 2]
+    pitching = volume[..., 1] + points[:, 2] * x - points[:, 0] * z
+    return np.stack([x.sum(axis=1), z.sum(axis=1), pitching.sum(axis=1)], axis=1)
 
 
 def _axle_loads(case: Case, total: Floats) -> Floats:
-    """Vertical load (C, 2) of the tyres of each axle under a wrench (C, 6) about the origin."""
+    """Vertical load (C, 2) of the tyres of each axle under force along z and moment about y (C, 2) at the origin."""
     front, rear = (case.axles[name].x for name in AXLES)
-    behind = (total[:, 4] + front * total[:, 2]) / (rear - front)
-    return np.stack([-total[:, 2] - behind, behind], axis=1)
+    behind = (total[:, 1] + front * total[:, 0]) / (rear - front)
+    return np.stack([-total[:, 0] - behind, behind], axis=1)
 
 
 def _settled(loop: Loop, ride: Floats) -> Floats:
@@ -133,7 +133,7 @@ def _settled(loop: Loop, ride: Floats) -> Floats:
     for _ in range(_ROUNDS):
         if np.abs(gap).max() <= _CLOSE:
             break
-        step = (np.linalg.pinv(np.eye(2) - _slope(loop, ride)) @ gap[..., None])[..., 0]
+        step = _newton(_slope(loop, ride, gap), gap)
         longest = np.abs(step).max(axis=1, keepdims=True)
         step = step * np.minimum(1.0, _FURTHEST / np.maximum(longest, _FURTHEST))
         tried = ride + share * step
@@ -144,18 +144,27 @@ def _settled(loop: Loop, ride: Floats) -> Floats:
     return ride
 
 
-def _slope(loop: Loop, ride: Floats) -> Floats:
-    """Slope (C, 2, 2) of the loop, by central differences."""
+def _slope(loop: Loop, ride: Floats, gap: Floats) -> Floats:
+    """Slope (C, 2, 2) of the loop, whose value at `ride` is ride + gap."""
     columns = []
     for axle in range(2):
         step = np.zeros(2)
         step[axle] = _STEP
-        columns.append((loop(ride + step) - loop(ride - step)) / (2.0 * _STEP))
+        columns.append((loop(ride + step) - ride - gap) / _STEP)
     return np.stack(columns, axis=-1)
 
 
+def _newton(slope: Floats, gap: Floats) -> Floats:
+    """Step (C, 2) that closes the gap where the loop is straight: the solution of (1 - slope) step = gap."""
+    a, b, c, d = 1.0 - slope[:, 0, 0], -slope[:, 0, 1], -slope[:, 1, 0], 1.0 - slope[:, 1, 1]
+    determinant = a * d - b * c
+    determinant = np.where(np.abs(determinant) < _FLAT, _FLAT, determinant)
+    return np.stack([d * gap[:, 0] - b * gap[:, 1], a * gap[:, 1] - c * gap[:, 0]], axis=1) / determinant[:, None]
+
+
 def _refuse(loop: Loop, ride: Floats, names: tuple[str, ...]) -> None:
-    gap = np.abs(loop(ride) - ride).max(axis=1)
+    left = loop(ride) - ride
+    gap = np.abs(left).max(axis=1)
     worst = int(np.argmax(gap))
     if not gap[worst] <= AGREED:
         lost = ", ".join(names[c] for c in np.flatnonzero(~(gap <= AGREED))[:5])
@@ -165,7 +174,7 @@ def _refuse(loop: Loop, ride: Floats, names: tuple[str, ...]) -> None:
             f"{1e3 * AGREED:g} mm",
             "look for a jump in the aero map, or check ride_stiffness and tyre_stiffness",
         )
-    growth = np.linalg.eigvals(_slope(loop, ride)).real.max(axis=1)
+    growth = np.linalg.eigvals(_slope(loop, ride, left)).real.max(axis=1)
     worst = int(np.argmax(growth))
     if growth[worst] >= 1.0:
         lost = ", ".join(names[c] for c in np.flatnonzero(growth >= 1.0)[:5])
