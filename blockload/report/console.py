@@ -20,6 +20,7 @@ from . import tables
 from .aero_tables import load_case_tables
 from .cautions import ONE_LINE
 from .choice import governing_index, lowest, lowest_per_criterion
+from .suspension_tables import suspension_tables
 from .wording import band, figure, fixed, plain_name, quantity
 
 WIDTH = 100
@@ -61,6 +62,7 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         tables.section_wrenches(cases),
         tables.stud_extremes(cases),
         *load_case_tables(cases),
+        *suspension_tables(case, cases),
     )
     failed = [item for item in case.checks if not item.ok]
     extra = [tables.check_table(failed, "Checks of the case file that failed")] if failed else []

@@ -28,6 +28,7 @@ from .faces import faces_svg
 from .pictures import Picture, Pictures
 from .routes import pad_table, routes
 from .run import RunLike
+from .suspension_tables import spin_table, suspension_tables
 from .wording import fixed, plain_name
 
 _XMLNS = " xmlns='http://www.w3.org/2000/svg'"
@@ -137,6 +138,8 @@ def _load_tables(case: Case, cases: LoadCases) -> list[tables.Table]:
         tables.stud_extremes(cases),
         tables.device_table(case),
         *load_case_tables(cases),
+        *suspension_tables(case, cases),
+        spin_table(case, cases),
         *case_tables(case),
     ]
 

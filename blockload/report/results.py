@@ -20,6 +20,7 @@ from ..car.model import BODIES, SECTION, LoadCases, Term
 from ..case.model import CORNERS, Case
 from .aero_results import aero_written
 from .files import write_beside
+from .suspension_results import links_written, tension_force, tension_line
 
 if TYPE_CHECKING:
     from ..block.model import Block
@@ -110,7 +111,7 @@ def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
             corner: {"force": wheels[k], "at": _contact(case, corner), "friction_used": used[k]}
             for k, corner in enumerate(CORNERS)
         },
-        "links": {},
+        "links": links_written(cases, index),
         "crank_torque": cases.crank_torque[index],
         "faces": {name: _face(cases, name, index) for name in cases.faces},
         "free_bodies": {},
@@ -128,9 +129,10 @@ def reassembled_residual(data: Mapping[str, Any]) -> float:
     Parameters
     ----------
     data : mapping
-        One load case as written. A line of `free_bodies` either holds its own force and moment, or names the wheel
-        or face whose numbers it stands for ("wheels.FL", "faces.front", with the sign it acts with), so that a wrong
-        number anywhere in wheels, faces, aero, inertia or corner resultants shows.
+        One load case as written. A line of `free_bodies` either holds its own force and moment, or names the wheel,
+        face or link whose numbers it stands for ("wheels.FL", "faces.front" with the sign it acts with; the tension of
+        "FL.steer" with its direction), so that a wrong number anywhere in wheels, links, faces, aero, inertia or corner
+        resultants shows.
 
     Returns
     -------
@@ -150,6 +152,8 @@ def reassembled_residual(data: Mapping[str, Any]) -> float:
 def _wrench(line: Mapping[str, Any], data: Mapping[str, Any]) -> np.ndarray[Any, Any]:
     """Force and moment about the car's origin of one free-body line, (2, 3)."""
     at, force, moment = (np.asarray(line.get(key, (0.0, 0.0, 0.0)), dtype=float) for key in ("at", "force", "moment"))
+    if "tension_of" in line:
+        force = tension_force(line, data["links"])
     if "same_as" in line:
         group, name = line["same_as"].split(".")
         other = data[group][name]
@@ -168,7 +172,9 @@ def _terms(cases: LoadCases, body: str, index: int, written: Mapping[str, Any]) 
         if not (term.force[index].any() or term.moment[index].any()):
             continue
         line = {"label": term.label, "at": at, "force": term.force[index], "moment": term.moment[index]}
-        lines.append(_stands_for(body, term, line, written) or line)
+        lines.append(
+            _stands_for(body, term, line, written) or tension_line(body, term.label, line, written["links"]) or line
+        )
     return lines
 
 
