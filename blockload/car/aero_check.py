@@ -58,9 +58,11 @@ def per_kilonewton(case: Case) -> Influence:
 def factor_on_aero(case: Case, cases: LoadCases) -> Floats:
     """Downforce of each load case over that of the same car at its speed, unfactored, (C,); nan without downforce.
 
-    Anything but 1 means that a dynamic factor, meant for masses, has been put on the air as well. Only for load cases
-    that keep all their downforce, run straight, and read no map.
+    Above 1, a dynamic factor, meant for masses, has been put on the air as well; below, some of it was left out (0
+    where a case keeps no downforce). nan too for a car with a map, whose area is not one number.
     """
+    if any(device.table is not None for device in case.devices):
+        return np.full(len(cases.names), np.nan)
     area = sum(device.downforce_area for device in as_devices(case).devices)
     own = 0.5 * case.air_density * cases.speed**2 * area
     result: Floats = np.divide(cases.downforce, own, out=np.full_like(own, np.nan), where=own != 0)

@@ -21,7 +21,7 @@ from ..case.model import Case, Check, MaterialChoice
 from ..installation.model import PadLoads
 from ..response.model import Library
 from .faces import face_margins
-from .load_checks import WHEEL_CHECK, aero_doubts, cases_at_map_edge, lifted_cases, load_checks
+from .load_checks import WHEEL_CHECK, aero_doubts, air_checks, cases_at_map_edge, lifted_cases, load_checks
 from .model import Margin, Margins, Verdict
 from .requirements import requirements
 from .scope import not_judged
@@ -50,7 +50,7 @@ def judge(
         At level `faces`, what the block would be cast in, for the requirements sheet; by default that of [concept].
 
     """
-    checks = tuple(load_checks(cases))
+    checks = (*load_checks(cases), *air_checks(case, cases))
     if block is not None and library is not None and pads is not None:
         return _solid(case, cases, block, library, pads, checks=checks)
     margins = (*stud_margins(case, cases), *face_margins(case, cases))

@@ -6,8 +6,9 @@ from collections.abc import Iterator
 
 import numpy as np
 
+from ..car.aero_check import factor_on_aero
 from ..car.model import LoadCases
-from ..case.model import Check
+from ..case.model import Case, Check
 
 WHEEL_CHECK = "load cases with a wheel load below zero"
 BALANCE = 1e-6
@@ -24,6 +25,16 @@ def load_checks(cases: LoadCases) -> Iterator[Check]:
     note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
     yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
     yield from _sign(cases)
+
+
+def air_checks(case: Case, cases: LoadCases) -> Iterator[Check]:
+    """Yield the check that no dynamic factor has been put on the air."""
+    factor = factor_on_aero(case, cases)
+    if not np.isfinite(factor).any():
+        return
+    worst = int(np.nanargmax(factor))
+    note = f"downforce over dynamic pressure times area, worst in {cases.names[worst]}: factors are for masses alone"
+    yield below("no factor on the air", factor[worst], 1.0 + BALANCE, note)
 
 
 def lifted_cases(cases: LoadCases) -> tuple[str, ...]:

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from ..car.aero_check import per_kilonewton
+from ..car.aero_check import per_kilonewton, remarks
 from ..car.aero_split import only_totals
 from ..car.aero_totals import totals
 from ..car.model import SECTION, LoadCases
@@ -21,7 +21,16 @@ def case_tables(case: Case) -> tuple[Table, ...]:
     """What the aero of a case adds up to, and what each device does to the faces; nothing for a car without."""
     if not case.devices and not only_totals(case):
         return ()
-    return totals_table(case, three_speeds(case)), influence_table(case), *stud_tables(case), moved_table(case)
+    found = totals_table(case, three_speeds(case)), influence_table(case), *stud_tables(case), moved_table(case)
+    return (*remark_tables(case), *found)
+
+
+def remark_tables(case: Case) -> tuple[Table, ...]:
+    """What looks wrong about the devices of a case, if anything does."""
+    found = remarks(case)
+    return (
+        (table("Aero devices to look at again", ("what looks wrong",), [(text,) for text in found]),) if found else ()
+    )
 
 
 def three_speeds(case: Case) -> tuple[float, ...]:

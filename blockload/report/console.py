@@ -17,7 +17,7 @@ from ..car.model import SECTION, LoadCases
 from ..case.model import Case
 from ..margins.model import Margin, Margins
 from . import tables
-from .aero_tables import load_case_tables
+from .aero_tables import load_case_tables, remark_tables
 from .cautions import ONE_LINE
 from .choice import governing_index, lowest, lowest_per_criterion
 from .suspension_tables import suspension_tables
@@ -62,6 +62,7 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         tables.section_wrenches(cases),
         tables.stud_extremes(cases),
         *load_case_tables(cases),
+        *remark_tables(case),
         *suspension_tables(case, cases),
     )
     failed = [item for item in case.checks if not item.ok]

@@ -17,6 +17,7 @@ from blockload.car.balance import balance
 from blockload.case.model import Case
 from blockload.case.reading import read
 from blockload.margins.judging import judge, verdict
+from blockload.margins.load_checks import air_checks
 from blockload.margins.model import Margin, Margins
 from blockload.margins.open_aero import over_splits
 
@@ -122,3 +123,15 @@ def test_an_aero_map_read_at_its_edge_neither_shows_nor_rules_out() -> None:
 
     assert said.word == "not shown"
     assert any("read beyond its grid" in reason for reason in said.reasons)
+
+
+def test_a_factor_on_the_air_fails_its_check() -> None:
+    """Mistake: aero scaled by a bump factor."""
+    cases = balance(CASE)
+    scaled = replace(cases, downforce=1.5 * cases.downforce)
+    good, bad = (next(air_checks(CASE, it)) for it in (cases, scaled))
+
+    assert good.ok
+    assert not bad.ok
+    assert bad.value == pytest.approx(1.5)
+    assert any(item.name == "no factor on the air" for item in judged(CASE).checks)

@@ -185,3 +185,11 @@ def test_figures_that_are_not_used_are_said(tmp_path: Path) -> None:
     assert said["aero_total.drag"] == "0 kN"
     assert said["aero_split"] == "not used"
     assert balance(open_one).drag.max() == 0.0
+
+
+def test_a_floor_on_the_gearbox_is_pointed_out_wherever_the_case_is_shown() -> None:
+    """Mistake: aero on the wrong body."""
+    wrong = tuple(replace(d, on="gearbox") if d.name == "floor" else d for d in CAR.devices)
+
+    assert "carried by the gearbox" in case_tables(replace(CAR, devices=wrong))[0].rows[0][0]
+    assert case_tables(CAR)[0].title == "Aero recomputed from the devices"
