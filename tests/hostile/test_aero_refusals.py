@@ -13,6 +13,7 @@ from car.worked_car import CAR, manoeuvre
 from blockload.car.balance import balance
 from blockload.case.aero_csv import read_aero, read_map
 from blockload.case.model import AeroTotal
+from blockload.case.reading import read
 from blockload.errors import BalanceError, CaseError
 
 FLOOR = "ride_front [mm],ride_rear [mm],downforce [m^2]\n"
@@ -159,3 +160,22 @@ def test_a_mapped_device_that_does_not_add_up_to_the_total_is_refused_with_both_
     twice = aero_map({}, lambda: (-0.4, 0, -4.6, 0, 0, 0, *no_point()))
     with pytest.raises(CaseError, match="counted twice"):
         balance(replace(with_map("floor", twice), aero_total=right))
+
+
+@pytest.mark.parametrize(
+    ("override", "words"),
+    [
+        (
+            ["aero.copy.on='tub'", "aero.copy.at='(-1.4, 0, 0.08) m'", "aero.copy.downforce_area='2.3 m^2'"],
+            "counted twice",
+        ),
+        (["aero_total.share_includes_drag_moment=false"], "check share_includes_drag_moment first"),
+        (["car.mass='1150 kg'", "car.front_weight_share=0.453", "car.cg_height='0.40 m'"], "the bodies give 0.36047 m"),
+        (["car.mass='990 kg'", "car.front_weight_share=0.453", "car.cg_height='0.36 m'"], "the bodies give 1150 kg"),
+    ],
+    ids=["aero twice", "other convention", "CG of the sprung mass", "corners left out of the mass"],
+)
+def test_the_car_is_refused_where_its_parts_do_not_sum_to_it(override: list[str], words: str) -> None:
+    """Mistakes: aero counted twice or shared by the other convention; transfer from sprung CG; unsprung mass apart."""
+    with pytest.raises(CaseError, match=words):
+        read(Path(__file__).parents[2] / "cases" / "demo.toml", override)
