@@ -18,6 +18,7 @@ from .aero import check_devices
 from .aero_split import bounds, only_totals, splits, with_middle_split
 from .aero_totals import refuse_wrong_total
 from .bodies import chassis, masses
+from .catalogue.expanding import expand
 from .corners import corner_loads
 from .crank import crank_couples, crank_torque
 from .engine_loads import engine_loads
@@ -39,7 +40,7 @@ from .wrench import sealed
 def balance(
     case: Case, manoeuvres: Sequence[Manoeuvre] | None = None, *, block_torsion: float | None = None
 ) -> LoadCases:
-    """Balanced load cases of a car: its own manoeuvres, or those given.
+    """Balanced load cases of a car: its own manoeuvres with those of its catalogue and envelope, or those given.
 
     `block_torsion` [N·m/rad] is the block's own torsional stiffness, in series with the chassis's between the axles;
     None: the block is rigid, or is contained in the chassis's figure.
@@ -51,7 +52,7 @@ def balance(
         case = with_middle_split(case, extremes)
     check_devices(case)
     refuse_wrong_total(case)
-    run = case.manoeuvres if manoeuvres is None else manoeuvres
+    run = (*case.manoeuvres, *expand(case)) if manoeuvres is None else manoeuvres
     inputs = read(case, run)
     car, frame = masses(case), chassis(case)
     inputs = in_the_air(case, inputs, car)

@@ -1,0 +1,1 @@
+"""The catalogue of standard situations, built with the car's own figures."""
