@@ -16,7 +16,7 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from . import __version__
-from .errors import BlockloadError, OutputError
+from .errors import BlockloadError, CaseError, OutputError
 
 if TYPE_CHECKING:
     from .pipeline import Progress
@@ -91,6 +91,24 @@ def loads(
 
 
 @app.command()
+def aero(
+    file: Annotated[Path, typer.Argument(metavar="FILE", help="An aero file (CSV).", show_default=False)],
+    against: Annotated[
+        Path | None, typer.Option("--against", metavar="CASE", help="The case to compare it with.")
+    ] = None,
+) -> None:
+    """Say how an aero file is understood, and what it changes against a case."""
+    from .case.reading import read
+    from .report.aero_report import aero_against
+    from .report.console import render
+
+    reading = aero_against(file, read(against) if against is not None else None)
+    _show(*render(reading.tables))
+    for warning in reading.warnings:
+        typer.secho(f"WARNING {warning}", fg=typer.colors.RED, err=True)
+
+
+@app.command()
 def compare(
     first: Annotated[Path, typer.Argument(metavar="A", help="A case file or the folder of a run.")],
     second: Annotated[Path, typer.Argument(metavar="B", help="Another one.")],
@@ -146,8 +164,13 @@ def cache(
     from .response import store
 
     if drop is not None:
-        for entry in store.drop(drop):
+        dropped = store.drop(drop)
+        for entry in dropped:
             typer.echo(f"dropped {entry.key[:16]}")
+        if not dropped:
+            raise CaseError(
+                "--drop", f"no entry's key starts with {drop!r}", "a key as listed, or all", "see: blockload cache"
+            )
     entries = store.list_entries()
     for entry in entries:
         typer.echo(f"{entry.key[:16]}  {entry.size / 1e6:9.1f} MB  {entry.path.parent}")

@@ -128,8 +128,10 @@ def _judge(
 
     if block is None or library is None:
         return None, judge(case, cases, None, None, None)
+    from .block.building import recarried
     from .installation.install import install
 
+    block = recarried(block, case)
     pads = install(cases, block, library, case)
     return pads, judge(case, cases, block, library, pads)
 
@@ -166,8 +168,16 @@ def _with_movements(
 def _movement(case: Case, bound: Bound, block: Block | None, library: Library | None) -> Movement:
     from .margins.model import Movement
 
-    low, high = (_judge(other, balance(other), block, library)[1].verdict.lowest_margin for other in _ends(case, bound))
-    return Movement(key=bound.key, low=bound.low, high=bound.high, margin_low=low, margin_high=high)
+    low, high = (_judge(other, balance(other), block, library)[1].verdict for other in _ends(case, bound))
+    return Movement(
+        key=bound.key,
+        low=bound.low,
+        high=bound.high,
+        margin_low=low.lowest_margin,
+        margin_high=high.lowest_margin,
+        word_low=low.word,
+        word_high=high.word,
+    )
 
 
 def _ends(case: Case, bound: Bound) -> Iterator[Case]:

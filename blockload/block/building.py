@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+from dataclasses import replace
 from types import MappingProxyType
 from typing import TYPE_CHECKING, Any
 
@@ -15,7 +16,7 @@ from .attachments import area_notes, attach
 from .carried import carried_masses
 from .curved import EDGES, determinant_bound, least_determinant, scaled_jacobian
 from .model import Block
-from .moments import mass_properties, volumes
+from .moments import MassProperties, mass_properties, volumes
 from .reading import RawBlock, read_mesh
 from .recipe import facet_numbers
 from .volumes import assign, partition
@@ -49,8 +50,7 @@ def build(case: Case) -> Block:
     mesh = _mesh(points, raw, names, volume_of)
     attachments = attach(mesh, spec, case.faces)
     metal = mass_properties(mesh, np.array([materials[name].density for name in names])[volume_of])
-    carried = carried_masses(case.bodies["engine"], metal, spec.carried, spec.carried_on)
-    return Block(
+    block = Block(
         mesh=mesh,
         volumes=names,
         volume_of=volume_of,
@@ -70,8 +70,21 @@ def build(case: Case) -> Block:
                 **_quality(points, raw.elements),
             }
         ),
-        carried=carried,
+        carried=(),
     )
+    return recarried(block, case)
+
+
+def recarried(block: Block, case: Case) -> Block:
+    """Return the block with the carried masses that this case's engine leaves to it (the metal stays as meshed).
+
+    Raises BlockError where engine and mesh contradict each other.
+    """
+    if case.block is None:
+        return block
+    metal = MassProperties(mass=block.mass, cg=block.cg, inertia=block.inertia)
+    carried = carried_masses(case.bodies["engine"], metal, case.block.carried, case.block.carried_on)
+    return replace(block, carried=carried)
 
 
 def placed(points: Floats, spec: BlockSpec) -> Floats:

@@ -1,7 +1,7 @@
-"""Metric studs: proof load from size and property class, and a first estimate of the clamped boss's stiffness.
+"""Metric studs: what a size and a property class carry, and a first estimate of the clamped boss's stiffness.
 
-Proof load = stress under proof load times nominal stress area A_s = π/4 (d - 0.9382 P)² (ISO 898-1, 9.1.6.1); the
-numbers and their sources stand in data/fasteners.toml.
+Stress area A_s = π/4 (d − 0.9382 P)² (ISO 898-1, 9.1.6.1); the proof load is the proof stress times A_s. The numbers
+and their sources stand in data/fasteners.toml.
 """
 
 from __future__ import annotations
@@ -9,8 +9,9 @@ from __future__ import annotations
 import math
 import re
 import tomllib
+from dataclasses import dataclass
 from functools import cache
-from pathlib import Path
+from importlib.resources import files
 from typing import Any
 
 from ..errors import CaseError, nearest
@@ -20,10 +21,59 @@ ALUMINIUM_G = 27e9
 """Young's and shear modulus of aluminium [Pa] (EN 1999-1-1, 3.2.5)."""
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Fastener:
+    """One size and class: diameters and pitch m, area m², strengths Pa; minima of the standard."""
+
+    size: str
+    property_class: str
+    diameter: float
+    pitch: float
+    area: float
+    tensile_strength: float
+    yield_strength: float
+    proof_stress: float
+    source: str
+
+    @property
+    def proof_load(self) -> float:
+        """Load the standard lets it carry without set [N]."""
+        return self.proof_stress * self.area
+
+    @property
+    def breaking_load(self) -> float:
+        """Least load at rupture [N]."""
+        return self.tensile_strength * self.area
+
+
 @cache
-def _data() -> dict[str, Any]:
-    path = Path(__file__).parent.parent / "data" / "fasteners.toml"
-    return tomllib.loads(path.read_text(encoding="utf-8"))
+def _table() -> dict[str, Any]:
+    return tomllib.loads(files("blockload.data").joinpath("fasteners.toml").read_text(encoding="utf-8"))
+
+
+@cache
+def fastener(size: str, property_class: str, where: str = "stud") -> Fastener:
+    """Return a fastener by size ("M12", or "M12x1.25" for a fine thread) and property class ("12.9").
+
+    Raises
+    ------
+    CaseError
+        For a size or class that is not in the table.
+
+    """
+    diameter, pitch = dimensions(size, where)
+    row = _class_row(property_class, diameter, where)
+    return Fastener(
+        size=size,
+        property_class=property_class,
+        diameter=diameter,
+        pitch=pitch,
+        area=math.pi / 4.0 * (diameter - 0.9382 * pitch) ** 2,
+        tensile_strength=row["tensile_strength"],
+        yield_strength=row["yield_strength"],
+        proof_stress=row["proof_stress"],
+        source=row["source"],
+    )
 
 
 def dimensions(size: str, where: str) -> tuple[float, float]:
@@ -35,7 +85,7 @@ def dimensions(size: str, where: str) -> tuple[float, float]:
         If the size is none, or has no coarse pitch here.
 
     """
-    pitches = {name: value for name, value in _data()["pitch"].items() if name != "source"}
+    pitches = {name: value for name, value in _table()["pitch"].items() if name != "source"}
     match = re.fullmatch(r"(M(\d+(?:\.\d+)?))(?:\s?[x×]\s?(\d+(?:\.\d+)?))?", size.strip())
     allowed = ", ".join(pitches) + ", or a fine thread such as M12x1.25"
     if match is None or (match[3] is None and match[1] not in pitches):
@@ -48,19 +98,15 @@ def dimensions(size: str, where: str) -> tuple[float, float]:
 
 
 def proof_load(size: str, property_class: str, where: str) -> float:
-    """Return the proof load [N] of a stud.
+    """Return the proof load [N] of a stud; raises CaseError for an unknown size or property class."""
+    return fastener(size, property_class, where).proof_load
 
-    Raises
-    ------
-    CaseError
-        If size or property class is unknown.
 
-    """
-    diameter, pitch = dimensions(size, where)
-    rows = _data()["class"]
+def _class_row(property_class: str, diameter: float, where: str) -> dict[str, Any]:
+    rows: list[dict[str, Any]] = _table()["class"]
     for row in rows:
         if row["name"] == property_class and diameter <= row.get("up_to", math.inf) * (1.0 + 1e-9):
-            return float(row["proof_stress"]) * math.pi / 4.0 * (diameter - 0.9382 * pitch) ** 2
+            return row
     known = sorted({row["name"] for row in rows}, key=float)
     found = f"{property_class!r} at {diameter * 1e3:g} mm is no property class known here"
     raise CaseError(where, found, ", ".join(known) + " (9.8 up to 16 mm)", nearest(property_class, known))

@@ -60,13 +60,15 @@ class Verdict:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Movement:
-    """How far one bounded input moves the lowest margin: the margin with the input at its low and high end."""
+    """How far one bounded input moves the lowest margin: margin and verdict with the input at its low and high end."""
 
     key: str
     low: str
     high: str
     margin_low: float | None
     margin_high: float | None
+    word_low: str
+    word_high: str
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)

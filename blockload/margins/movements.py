@@ -1,8 +1,8 @@
 """What a missing number may do to the verdict.
 
-A bounded input is run at both ends with everything else at its middle. Where the lowest margin changes sign
-between the ends, or an end gives no margin at all, nothing is shown and nothing is ruled out: the number must be
-found first. Otherwise the verdict stands, and the input is listed with how far it moves the lowest margin.
+A bounded input is run at both ends with everything else at its middle. Where the verdict is another one at either
+end, nothing is shown and nothing is ruled out: the number must be found first. Otherwise the verdict stands, and the
+input is listed with how far it moves the lowest margin. Inputs are moved one at a time.
 """
 
 from __future__ import annotations
@@ -26,17 +26,8 @@ def moved(margins: Margins, movements: tuple[Movement, ...]) -> Margins:
 
 
 def _verdict(verdict: Verdict, movements: tuple[Movement, ...]) -> Verdict:
-    deciding = tuple(item.key for item in movements if _decides(verdict, item))
+    deciding = [item.key for item in movements if {item.word_low, item.word_high} != {verdict.word}]
     if not deciding:
         return verdict
-    reason = "decided by a number that is missing from the case file: " + ", ".join(deciding)
-    return replace(verdict, word="not shown", reasons=(*verdict.reasons, reason))
-
-
-def _decides(verdict: Verdict, movement: Movement) -> bool:
-    """Whether the lowest margin has the other sign, or none, at either end of the input."""
-    if verdict.lowest_margin is None:
-        return False
-    fails = verdict.lowest_margin < 0.0
-    ends = (movement.margin_low, movement.margin_high)
-    return any(end is None or (end < 0.0) != fails for end in ends)
+    reason = f"missing from the case file, and the verdict turns on it: {', '.join(deciding)}"
+    return replace(verdict, word="not shown", reasons=(reason, *verdict.reasons))

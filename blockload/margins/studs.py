@@ -21,10 +21,10 @@ import numpy as np
 
 from ..arrays import Floats
 from ..car.model import LoadCases
+from ..case.fasteners import Fastener, fastener
 from ..case.model import Case, Limits, Stud
 from ..installation.model import PadLoads
 from ..response.model import Library
-from .fasteners import Fastener, fastener
 from .model import Margin
 from .splits import Split, installed_splits, rigid_splits
 from .wording import INCREMENT, causes, margin_at

@@ -42,10 +42,10 @@ def fill_beside(path: Path, fill: Callable[[Path], None]) -> None:
 
 
 def probe_folder(folder: Path) -> None:
-    """Refuse a folder that cannot be written, before any work is done for it."""
+    """Refuse a folder that cannot be written, before any work is done for it; leaves nothing behind."""
+    existing = next(path for path in (folder, *folder.absolute().parents) if path.exists())
     try:
-        folder.mkdir(parents=True, exist_ok=True)
-        with tempfile.NamedTemporaryFile(dir=folder, prefix=".part-"):
+        with tempfile.NamedTemporaryFile(dir=existing, prefix=".part-"):
             pass
     except OSError as error:
         raise refusal(folder, error) from error

@@ -41,10 +41,10 @@ def read_results(folder: Path) -> dict[str, Any]:
 
 
 def verify_run(folder: Path) -> tuple[Check, ...]:
-    """Return one check per load case (balance from the written numbers) and one for the case file's hash."""
+    """Return one check per load case (balance from the written numbers) and one per input file (its hash)."""
     data = read_results(folder)
     checks = [_balance(name, load_case) for name, load_case in data["load_cases"].items()]
-    return (*checks, _case_hash(folder, data))
+    return (*checks, *(_input_hash(folder, name, known) for name, known in data["inputs"]["files"].items()))
 
 
 def _balance(name: str, load_case: dict[str, Any]) -> Check:
@@ -52,14 +52,12 @@ def _balance(name: str, load_case: dict[str, Any]) -> Check:
     return Check(name=f"balance of {name}", ok=value <= RESIDUAL, value=value, limit=RESIDUAL)
 
 
-def _case_hash(folder: Path, data: dict[str, Any]) -> Check:
-    expected = data["inputs"]["case_sha256"]
-    found = [hashlib.sha256(path.read_bytes()).hexdigest() for path in sorted((folder / "inputs").glob("*.toml"))]
-    ok = expected in found
-    return Check(
-        name="case file as hashed in the results",
-        ok=ok,
-        value=0.0 if ok else 1.0,
-        limit=0.0,
-        note="" if ok else f"no file in inputs/ has the hash {expected[:12]}",
-    )
+def _input_hash(folder: Path, name: str, known: str) -> Check:
+    path = folder / "inputs" / name
+    try:
+        found = hashlib.sha256(path.read_bytes()).hexdigest()
+    except OSError:
+        found = "missing"
+    ok = found == known
+    note = "" if ok else f"written {known[:12]}, found {found[:12]}"
+    return Check(name=f"input {name} unchanged", ok=ok, value=float(not ok), limit=0.0, note=note)

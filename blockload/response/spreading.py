@@ -16,7 +16,7 @@ from ..errors import BlockError
 from .elements import EDGES, Bools
 
 SPREAD_ORDER = 8
-CHECK_ORDER = 6
+CHECK_ORDER = 10
 _EDGE_OF_CORNERS = ((0, 1), (1, 2), (0, 2))
 
 

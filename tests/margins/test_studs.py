@@ -10,11 +10,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from installation import synthetic_car as car
 
-from blockload.case.fasteners import proof_load
+from blockload.case.fasteners import fastener, proof_load
 from blockload.errors import CaseError
 from blockload.installation.install import install
 from blockload.margins.faces import face_margins
-from blockload.margins.fasteners import fastener
 from blockload.margins.splits import rigid_splits, series, spring_split
 from blockload.margins.studs import Split, criteria, joint, margin_of, stud_margins
 from blockload.margins.wording import LARGEST

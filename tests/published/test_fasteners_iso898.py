@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import pytest
 
-from blockload.margins.fasteners import fastener
+from blockload.case.fasteners import fastener
 
 # size: A_s mm², then (proof, break) kN of 8.8, 10.9, 12.9
 TABLE = {

@@ -14,7 +14,7 @@ import numpy as np
 import pytest
 from installation import synthetic_car as car
 
-from blockload.margins.fasteners import Fastener
+from blockload.case.fasteners import Fastener
 from blockload.margins.model import Margin
 from blockload.margins.studs import Joint, Split, criteria, margin_of
 
