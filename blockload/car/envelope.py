@@ -5,7 +5,8 @@ For a speed v and a heading theta the boundary is the first |a| along (cos theta
     the drive is at its power:  F_x v = P,
     or a second wheel leaves the ground.
 Forward force is the driven axle's, braking force is shared by the brakes' balance; wheel loads are the car's own, with
-a lifted wheel let go as in every load case. All speeds and headings are searched at once: a coarse walk outwards to the
+a lifted wheel let go as in every load case. An axle at its grip may ask more of one of its two tyres, since drive and
+brake force are shared equally and side force by load. All speeds and headings are searched at once: a coarse walk outwards to the
 first point beyond a limit, then bisection. With aero maps the air is read again at the boundary until both agree.
 The picture of such a boundary over speed is usual practice (W. F. Milliken, D. L. Milliken, *Race Car Vehicle
 Dynamics*, SAE 1995, ch. 9; chapter from memory).
@@ -21,6 +22,7 @@ from ..arrays import Floats, Ints, frozen
 from ..case.model import Case, Manoeuvre
 from ..errors import BalanceError, CaseError
 from .bodies import chassis, masses
+from .catalogue.figures import gear_at
 from .chassis import elastic_split, in_series, lumps
 from .lift import below_zero, first_to_lift
 from .manoeuvres import DRIVEN, Inputs, read
@@ -137,6 +139,7 @@ def vertices(case: Case) -> tuple[Manoeuvre, ...]:
                     speed=speed,
                     acceleration=frozen((*found.acceleration[v, h], 0.0)),
                     drive="accelerate" if pushed else "brake",
+                    overall_ratio=gear_at(case, speed) if pushed else None,
                     group=GROUP,
                     basis=f"boundary of grip and power: {LIMITS[found.limit[v, h]]}",
                 )

@@ -7,6 +7,8 @@ from itertools import pairwise
 from typing import Any
 
 from ..errors import nearest
+from ..units import show
+from .factors import CREST, DEFAULTS, FAST_CORNER, SLOW_CORNER, USED_BY
 from .groups import BRAKING, FACTORS, FORCES, TURNING, WORDS, spelled_out
 from .model import CatalogueSpec, EnvelopeSpec, Factor, GivenForce, Performance, Point
 from .notes import Notes, key_of
@@ -81,7 +83,29 @@ def build_catalogue(table: CaseTable, notes: Notes) -> CatalogueSpec | None:
     if "kerb" in forces and "kerb" in factors:
         found, remedy = "a force and a factor are both given", "a measured force holds its dynamics already"
         notes.problem("catalogue.factors.kerb", found, "[catalogue.forces.kerb] or this factor", remedy)
-    return CatalogueSpec(groups=spelled_out(given.groups), factors=factors, forces=forces)
+    spec = CatalogueSpec(groups=spelled_out(given.groups), factors=factors, forces=forces)
+    _note_defaults(spec, table.performance, notes)
+    return spec
+
+
+def _note_defaults(spec: CatalogueSpec, performance: PerformanceTable | None, notes: Notes) -> None:
+    """Note every factor and speed that the groups use and the case does not give."""
+    for name, factor in DEFAULTS.items():
+        using = set(USED_BY[name]) & set(spec.groups) - set(spec.forces)
+        if "crest" in using and performance is not None and performance.compression is not None:
+            using -= {"crest"}
+        if using and name not in spec.factors:
+            notes.default(f"catalogue.factors.{name}", f"{factor.value:g}", f"of {factor.of}: {factor.source}")
+    if performance is None or performance.speed is None:
+        return
+    if {"corner", "kerb", "landing", "brake_in_corner"} & set(spec.groups) and performance.fast_corner is None:
+        value = show(FAST_CORNER * performance.speed, "m/s")
+        notes.default("performance.fast_corner", value, f"{FAST_CORNER:g} times the highest speed; unsourced")
+    if {"corner", "power_in_corner", "kerb", "shift"} & set(spec.groups) and performance.slow_corner is None:
+        value = show(SLOW_CORNER * performance.speed, "m/s")
+        notes.default("performance.slow_corner", value, f"{SLOW_CORNER:g} times the highest speed; unsourced")
+    if "crest" in spec.groups and performance.crest is None:
+        notes.default("performance.crest", f"{CREST:g} g", "the weight just lifted off: common practice, unsourced")
 
 
 def _refuse_factor_on_aero(name: str, applies_to: str | None, notes: Notes) -> None:

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ...arrays import Floats, frozen
+from ...case.factors import FAST_CORNER, SLOW_CORNER
 from ...case.model import Case, Manoeuvre
 from ..bodies import chassis, masses
 from ..manoeuvres import read
@@ -18,8 +19,6 @@ from ..sources import elementary, source_names
 from ..torque import crank_speed, driven_radius
 from ..wheels import tyre_answer
 
-FAST, SLOW = 0.8, 0.35
-"""Speeds of the fast and the slow corner as shares of the highest; unsourced."""
 DIAGONAL = 2.0**-0.5
 """Share of both limits at 45 degrees on the friction ellipse."""
 _REST = frozen(np.zeros(3))
@@ -42,12 +41,12 @@ def left_out(group: str, situation: str, key: str, what: str) -> Omission:
 
 def fast_corner(case: Case) -> float | None:
     """Speed of the fast corner [m/s], None where no speed is known."""
-    return _speed(case, case.performance.fast_corner, FAST)
+    return _speed(case, case.performance.fast_corner, FAST_CORNER)
 
 
 def slow_corner(case: Case) -> float | None:
     """Speed of the slow corner [m/s], None where no speed is known."""
-    return _speed(case, case.performance.slow_corner, SLOW)
+    return _speed(case, case.performance.slow_corner, SLOW_CORNER)
 
 
 def scaled(case: Case, value: float, known_at: float, to: float) -> float:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from ...arrays import frozen
+from ...case.factors import CREST
 from ...case.model import Case, Manoeuvre
 from ..bodies import masses
 from .factors import factor
@@ -22,8 +23,6 @@ from .figures import (
 )
 
 SIDES = {"left": 1.0, "right": -1.0}
-CREST = -1.0
-"""Vertical acceleration over a crest in g: weight just lifted off; common practice, unsourced."""
 Built = Iterator[Manoeuvre | Omission]
 
 
