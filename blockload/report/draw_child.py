@@ -14,6 +14,8 @@ from typing import Any
 
 import numpy as np
 import pyvista
+from matplotlib.image import imsave
+from vtkmodules.vtkRenderingCore import vtkWindowToImageFilter
 
 from ..arrays import Floats, Ints
 from .colours import USE_LIMIT, stress_colours, use_colours
@@ -110,7 +112,7 @@ def overview(data: dict[str, Any], folder: Path) -> dict[str, Any]:
                 height = _half_height(both - centre, np.array(direction), OVERVIEW)
                 _look(plotter, centre, np.array(direction), height)
                 key = f"{'margin' if scalars == 'use' else 'stress'}_{name}"
-                plotter.screenshot(str(folder / f"{key}.png"))
+                _save(plotter, folder / f"{key}.png")
                 drawn[key] = {}
     return drawn
 
@@ -138,7 +140,7 @@ def hotspots(data: dict[str, Any], folder: Path) -> dict[str, Any]:
             reach, path = _reach(data, node), folder / f"hotspot_{k}.png"
             for direction in _clear_directions(mesh, spot, np.asarray(normals[node])):
                 if _aim(plotter, spot, direction, reach):
-                    _close_up(plotter, path, spot, direction, reach)
+                    _save(plotter, path, ring=True)
                     drawn[path.stem] = {"visible": True, "cut": False}
                     break
             else:
@@ -148,7 +150,7 @@ def hotspots(data: dict[str, Any], folder: Path) -> dict[str, Any]:
         with _plotter(CLOSE) as plotter:
             _paint(plotter, opened, "use", _table(use_colours(), USE_LIMIT))
             visible = _aim(plotter, spot, normal, reach)
-            _close_up(plotter, path, spot, normal, reach, ring=visible)
+            _save(plotter, path, ring=visible)
             drawn[path.stem] = {"visible": visible, "cut": True}
     return drawn
 
@@ -159,18 +161,21 @@ def _aim(plotter: Any, spot: Floats, direction: Floats, reach: float) -> bool:
     return _seen(plotter, spot)
 
 
-def _close_up(plotter: Any, path: Path, spot: Floats, direction: Floats, reach: float, *, ring: bool = True) -> None:
-    """Draw the view already aimed at; the ring lies before everything, so it needs a spot that is seen."""
-    mark = None
+def _save(plotter: Any, path: Path, *, ring: bool = False) -> None:
+    """Write what was drawn last; a ring in the middle of the picture marks the spot the camera looks at."""
+    grab = vtkWindowToImageFilter()
+    grab.SetInput(plotter.render_window)
+    grab.ShouldRerenderOff()
+    grab.ReadFrontBufferOff()
+    grab.Update()
+    image = pyvista.wrap(grab.GetOutput())
+    wide, high, _ = image.dimensions
+    pixels = np.asarray(image.point_data["ImageScalars"]).reshape(high, wide, -1)[::-1, :, :3].copy()
     if ring:
-        centre = spot + 1.0 * direction / np.linalg.norm(direction)
-        circle = pyvista.Disc(center=centre, inner=0.16 * reach, outer=0.18 * reach, normal=direction, c_res=60)
-        mark = plotter.add_mesh(circle, color="black", lighting=False)
-        plotter.renderer.reset_camera_clipping_range()
-        plotter.render_window.Render()
-    plotter.screenshot(str(path))
-    if mark is not None:
-        plotter.remove_actor(mark)
+        y, x = np.mgrid[:high, :wide]
+        away = np.abs(np.hypot(x - (wide - 1) / 2, y - (high - 1) / 2) - 0.085 * high)
+        pixels = (pixels * np.clip(away - 1.0, 0.0, 1.0)[..., None]).astype(np.uint8)
+    imsave(path, pixels)
 
 
 def _reach(data: dict[str, Any], node: int) -> float:
