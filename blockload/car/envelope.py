@@ -6,8 +6,9 @@ For a speed v and a heading theta the boundary is the first |a| along (cos theta
     or a second wheel leaves the ground.
 Forward force is the driven axle's, braking force is shared by the brakes' balance; wheel loads are the car's own, with
 a lifted wheel let go as in every load case. An axle at its grip may ask more of one of its two tyres, since drive and
-brake force are shared equally and side force by load. All speeds and headings are searched at once: a coarse walk outwards to the
-first point beyond a limit, then bisection. With aero maps the air is read again at the boundary until both agree.
+brake force are shared equally and side force by load. All speeds and headings are searched at once: a coarse walk
+outwards to the first point beyond a limit, then bisection. With aero maps the air is read again at the boundary until
+both agree.
 The picture of such a boundary over speed is usual practice (W. F. Milliken, D. L. Milliken, *Race Car Vehicle
 Dynamics*, SAE 1995, ch. 9; chapter from memory).
 """

@@ -21,6 +21,8 @@ from .model import FaceLoads
 from .studs import pattern, rigid_face
 from .wrench import moved, sealed
 
+_ROUNDING = 1e-9  # of the larger of force [N] and moment [N·m]
+
 
 def chain_loads(loads: Floats, frame: Chassis, corners: CornerLoads, handed: Floats, shaft: Floats) -> Floats:
     """Loads (C, S, 3, 6) on tub, engine and gearbox about the origin, with all that corners and shafts hand on.
@@ -49,11 +51,13 @@ def face_loads(case: Case, chain: Floats) -> Mapping[str, FaceLoads]:
 def front_rear_gap(chain: Floats) -> Floats:
     """Disagreement (C,) of a face wrench summed from the front and from the rear, as a share of what is summed."""
     total = chain.sum(axis=1)
-    worst = np.zeros(len(chain))
+    gaps, sizes = [], []
     for part in (slice(0, 3), slice(3, 6)):
-        gap = np.linalg.norm(total[..., part].sum(axis=1), axis=-1)
-        size = np.linalg.norm(total[..., part], axis=-1).sum(axis=1)
-        worst = np.maximum(worst, np.divide(gap, size, out=np.zeros_like(gap), where=size > 0))
+        gaps.append(np.linalg.norm(total[..., part].sum(axis=1), axis=-1))
+        sizes.append(np.linalg.norm(total[..., part], axis=-1).sum(axis=1))
+    gap, size = np.stack(gaps), np.stack(sizes)
+    size = np.maximum(size, _ROUNDING * size.max(axis=0))  # a pure couple leaves forces that are rounding alone
+    worst: Floats = np.divide(gap, size, out=np.zeros_like(gap), where=size > 0).max(axis=0)
     return worst
 
 
