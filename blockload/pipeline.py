@@ -57,10 +57,10 @@ class Run:
     margins: Margins
 
 
-def loads(path: Path, overrides: Sequence[str] = ()) -> tuple[Case, LoadCases]:
-    """Read a case file and balance its load cases."""
+def loads(path: Path, overrides: Sequence[str] = (), *, judged_only: bool = False) -> tuple[Case, LoadCases]:
+    """Read a case file and balance its load cases, or those alone that take part in a verdict."""
     case = read(path, overrides)
-    return case, balance(case)
+    return case, balance(case, judged_only=judged_only)
 
 
 def check(
@@ -92,8 +92,11 @@ def check(
     """
     tell = progress or (lambda _step, _share: None)
     tell("loads", 0.0)
-    case, cases = loads(path, overrides)
+    case, cases = loads(path, overrides, judged_only=True)
     block, library = _respond(case, solver=solver, cache=cache, progress=tell)
+    if case.chassis_without_block and library is not None:
+        case = _with_block_twist(case, block, library)
+        cases = balance(case)
     tell("margins", 0.0)
     pads, margins = _judge(case, cases, block, library)
     margins = _over_splits(case, cases, block, library, margins, tell)
@@ -119,6 +122,17 @@ def _respond(case: Case, *, solver: str, cache: Path | None, progress: Progress)
     progress("block", 0.0)
     block = build(case)
     return block, respond(block, solver=solver, cache=cache, progress=progress)
+
+
+def _with_block_twist(case: Case, block: Block | None, library: Library | None) -> Case:
+    """Put the block's own torsional stiffness in series with the rest of the chassis, where the case asks for it."""
+    if block is None or library is None or not case.chassis_without_block:
+        return case
+    from .car.chassis import in_series
+    from .margins.stiffness import face_to_face
+
+    own = float(face_to_face(block, library, case)[0])
+    return replace(case, chassis_torsion=in_series(case.chassis_torsion, own), chassis_without_block=False)
 
 
 def _judge(
@@ -148,7 +162,7 @@ def _over_splits(
     ends = []
     for index, (_, other) in enumerate(extreme_cases(case)):
         progress("splits of the downforce", index / len(cases.aero_bounds.splits))
-        ends.append(_judge(other, balance(other), block, library)[1])
+        ends.append(_judge(other, balance(other, judged_only=True), block, library)[1])
     return over_splits(case, cases, margins, ends)
 
 
@@ -168,7 +182,8 @@ def _with_movements(
 def _movement(case: Case, bound: Bound, block: Block | None, library: Library | None) -> Movement:
     from .margins.model import Movement
 
-    low, high = (_judge(other, balance(other), block, library)[1].verdict for other in _ends(case, bound))
+    ends = (_with_block_twist(other, block, library) for other in _ends(case, bound))
+    low, high = (_judge(other, balance(other, judged_only=True), block, library)[1].verdict for other in ends)
     return Movement(
         key=bound.key,
         low=bound.low,

@@ -38,12 +38,17 @@ from .wrench import sealed
 
 
 def balance(
-    case: Case, manoeuvres: Sequence[Manoeuvre] | None = None, *, block_torsion: float | None = None
+    case: Case,
+    manoeuvres: Sequence[Manoeuvre] | None = None,
+    *,
+    block_torsion: float | None = None,
+    judged_only: bool = False,
 ) -> LoadCases:
     """Balanced load cases of a car: its own manoeuvres with those of its catalogue and envelope, or those given.
 
     `block_torsion` [N·m/rad] is the block's own torsional stiffness, in series with the chassis's between the axles;
-    None: the block is rigid, or is contained in the chassis's figure.
+    None: the block is rigid, or is contained in the chassis's figure. `judged_only` leaves out manoeuvres that take no
+    part in a verdict.
 
     Raises CaseError for a manoeuvre or a car that has no meaning, BalanceError for a residual above 1e-6.
     """
@@ -53,6 +58,7 @@ def balance(
     check_devices(case)
     refuse_wrong_total(case)
     run = (*case.manoeuvres, *expand(case)) if manoeuvres is None else manoeuvres
+    run = tuple(it for it in run if it.judged) if judged_only else run
     inputs = read(case, run)
     car, frame = masses(case), chassis(case)
     inputs = in_the_air(case, inputs, car)

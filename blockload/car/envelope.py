@@ -22,6 +22,7 @@ import numpy as np
 from ..arrays import Floats, Ints, frozen
 from ..case.model import Case, Manoeuvre
 from ..errors import BalanceError, CaseError
+from .aero_split import only_totals, splits, with_middle_split
 from .bodies import chassis, masses
 from .catalogue.figures import gear_at
 from .chassis import elastic_split, in_series, lumps
@@ -100,6 +101,8 @@ def boundary(case: Case, speeds: Floats, headings: Floats, *, power: float | Non
     if case.tyres.mu_x is None and case.tyres.mu_y is None:
         remedy = "add mu_x and mu_y under [tyres]"
         raise CaseError(f"{case.path}, tyres.mu_y", "not given", "the tyres' friction", remedy)
+    if only_totals(case):
+        case = with_middle_split(case, splits(case))
     speed = np.repeat(speeds, len(headings))
     direction = np.tile(np.stack([np.cos(headings), np.sin(headings)], axis=1), (len(speeds), 1))
     inputs = _inputs(case, speed)

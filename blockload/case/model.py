@@ -264,6 +264,7 @@ class Manoeuvre:
     `supports` hold the car instead of its wheels, and answer everything; `down` (3,) is the direction of gravity, None
     for straight down; kind is "service" (it recurs in use) or "limit" (it must be survived); a fatigue-exempt one is
     not counted as a cycle. `factor` is the one dynamic factor in it; `group` names the catalogue's group it is from.
+    One that is not `judged` hands loads on to the neighbours (a rule's test on the tub) and takes no part in a verdict.
     """
 
     name: str
@@ -285,6 +286,7 @@ class Manoeuvre:
     point_forces: tuple[PointForce, ...] = ()
     supports: tuple[Support, ...] = ()
     down: Floats | None = None
+    judged: bool = True
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -464,7 +466,8 @@ class Check:
 class Case:
     """A case file, read, checked and converted. `document` is the merged TOML it was built from.
 
-    chassis_torsion [N·m/rad] is the torsional stiffness between the axles, None for a rigid chassis.
+    chassis_torsion [N·m/rad] is the torsional stiffness between the axles, None for a rigid chassis;
+    chassis_without_block says that the block's own is not in it and comes in series once known.
     """
 
     path: Path
@@ -496,6 +499,7 @@ class Case:
     concept_grade: str | None = None
     tyres: Tyres = field(default_factory=Tyres)
     chassis_torsion: float | None = None
+    chassis_without_block: bool = False
     points: Mapping[str, Point] = field(default_factory=dict)
     performance: Performance = field(default_factory=Performance)
     catalogue: CatalogueSpec | None = None

@@ -1,4 +1,8 @@
-"""What class rules ask of the joint between tub and engine: the roll structure's test and a rear impact."""
+"""What class rules ask of the joint between tub and engine: the roll structure's test and a rear impact.
+
+Roll structures and crash are not judged here: these load cases hand the reactions on to whoever designs the tub's
+inserts and the structure behind, and take no part in a verdict on the block.
+"""
 
 from __future__ import annotations
 
@@ -42,6 +46,7 @@ def roll_structure(case: Case) -> Built:
             supports=(held,),
             kind="limit",
             fatigue_exempt=True,
+            judged=False,
             group="roll_structure",
             basis=f"{basis}; the engine is held fast, so the front face carries what the test rig would",
         )
@@ -63,6 +68,7 @@ def rear_impact(case: Case) -> Built:
         point_forces=(force,),
         kind="limit",
         fatigue_exempt=True,
+        judged=False,
         group="rear_impact",
         basis=given.basis,
     )
