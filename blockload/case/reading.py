@@ -229,6 +229,7 @@ def _assembled(
         checks=(),
         tyres=build_tyres(table.tyres, notes),
         chassis_torsion=table.chassis.torsion_stiffness if table.chassis is not None else None,
+        chassis_without_block=table.chassis is not None and table.chassis.without_block is True,
         points=build_points(table),
         performance=build_performance(table.performance, notes),
         catalogue=build_catalogue(table, notes),

@@ -269,6 +269,12 @@ class ChassisTable(Table):
         example='"12 kNm/deg"',
         band=("0.2 kNm/deg", "500 kNm/deg"),
     )
+    without_block: bool | None = words(
+        "true where that is tub and gearbox alone: the block's own stiffness is then put in series once it is known",
+        default="false",
+        source="a chassis is measured with its engine in",
+        example="true",
+    )
 
 
 class TyresTable(Table):
