@@ -42,7 +42,7 @@ def installed(solver: str) -> bool:
 
 
 def factorise(matrix: Any, solver: str, points: Floats) -> Solve:
-    """Factor a symmetric positive definite CSR matrix whose unknown 3·node + component belongs to points (N, 3)."""
+    """Factor a symmetric positive definite matrix of 3×3 node blocks (BSR) on points (N, 3)."""
     makers = {"fronts": _fronts, "scipy": _scipy, "ngsolve": _ngsolve, "pypardiso": _pypardiso}
     solve = makers[choose(solver)](matrix, points)
 
@@ -66,15 +66,12 @@ def residual(matrix: Any, result: Floats, columns: Floats) -> float:
 
 
 def node_graph(matrix: Any) -> Any:
-    """Graph of the node blocks (N, N) of a matrix with three unknowns per node."""
+    """Graph (N, N) of a matrix of node blocks."""
     from scipy import sparse
 
     count = matrix.shape[0] // 3
-    rows = np.repeat(np.arange(matrix.shape[0]) // 3, np.diff(matrix.indptr))
     ones = np.ones(len(matrix.indices), dtype=np.int8)
-    graph = sparse.coo_array((ones, (rows, matrix.indices // 3)), shape=(count, count)).tocsr()
-    graph.data[:] = 1
-    return graph
+    return sparse.csr_array((ones, matrix.indices, matrix.indptr), shape=(count, count))
 
 
 def _fronts(matrix: Any, points: Floats) -> Solve:
@@ -89,7 +86,7 @@ def _scipy(matrix: Any, points: Floats) -> Solve:
     parts = dissect(node_graph(matrix), points)
     nodes = np.concatenate([part.nodes for part in parts])
     order = (3 * nodes[:, None] + np.arange(3)).ravel()
-    permuted = matrix[order][:, order].tocsc()
+    permuted = matrix.tocsr()[order][:, order].tocsc()
     options = {"SymmetricMode": True}
     factor = splu(permuted, permc_spec="NATURAL", diag_pivot_thresh=0.0, options=options)
 
@@ -106,7 +103,7 @@ def _ngsolve(matrix: Any, points: Floats) -> Solve:
     from ngsolve.la import SparseMatrixd
     from scipy import sparse
 
-    lower = sparse.tril(matrix).tocoo()
+    lower = sparse.tril(matrix.tocsr()).tocoo()
     size = matrix.shape[0]
     with TaskManager():
         entries = SparseMatrixd.CreateFromCOO(
@@ -136,7 +133,7 @@ def _pypardiso(matrix: Any, points: Floats) -> Solve:
         solver.set_iparm(entry, 0)
     for entry, value in ((1, 1), (2, 3)):
         solver.set_iparm(entry, value)
-    upper = sparse.csr_matrix(sparse.triu(matrix, format="csr"))
+    upper = sparse.csr_matrix(sparse.triu(matrix.tocsr(), format="csr"))
     solver.factorize(upper)
 
     def solve(columns: Floats) -> Floats:

@@ -26,6 +26,7 @@ from .relief import FreeBody, free_body
 from .spreading import unit_wrenches
 from .stiffness import heat_loads, mass, stiffness
 from .store import cache_folder, fingerprint, load, save
+from .threads import one_thread
 
 Progress = Callable[[str, float], None]
 BLOCK_OF_COLUMNS = 24
@@ -100,6 +101,11 @@ def solve(
     block: Block, *, solver: str = "fronts", report: Progress = lambda stage, share: None, held: Ints | None = None
 ) -> Library:
     """Solve all unit loads, nothing read or written. `held` overrides the six auxiliary constraints."""
+    with one_thread():
+        return _solve(block, solver, report, held)
+
+
+def _solve(block: Block, solver: str, report: Progress, held: Ints | None) -> Library:
     elements = elements_of(block)
     report("assembling the stiffness", 0.0)
     matrix = stiffness(elements)
@@ -118,14 +124,18 @@ def solve(
 
 def hold(matrix: Any, held: Ints) -> Any:
     """The matrix with rows and columns of the held unknowns emptied, their diagonal kept; symmetric still."""
-    from scipy import sparse
-
-    free = np.ones(matrix.shape[0])
-    free[held] = 0.0
-    mask = sparse.diags_array(free)
-    result = (mask @ matrix @ mask + sparse.diags_array((1 - free) * matrix.diagonal())).tocsr()
-    result.eliminate_zeros()
-    result.sort_indices()
+    result = matrix.copy()
+    for node, component in zip(*np.divmod(held, 3), strict=True):
+        own = slice(matrix.indptr[node], matrix.indptr[node + 1])
+        neighbours = matrix.indices[own]
+        stiff = result.data[own][neighbours == node][0, component, component]
+        result.data[own, component, :] = 0.0
+        for other in neighbours:
+            start, stop = matrix.indptr[other], matrix.indptr[other + 1]
+            place = start + np.searchsorted(matrix.indices[start:stop], node)
+            result.data[place, :, component] = 0.0
+        place = own.start + np.searchsorted(neighbours, node)
+        result.data[place, component, component] = stiff
     return result
 
 

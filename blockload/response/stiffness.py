@@ -29,7 +29,7 @@ _CENTRE = np.full((1, 3), 0.25)
 
 
 def stiffness(elements: Elements) -> Any:
-    """Assemble the stiffness (3N, 3N) [N/m] as a symmetric CSR array with sorted indices."""
+    """Assemble the stiffness (3N, 3N) [N/m]: symmetric, as 3×3 node blocks in rows with sorted indices (BSR)."""
     values = np.empty((len(elements.nodes), _FIRST.size, 3, 3))
     flat = straight(elements)
     for chosen, order, points in (
@@ -69,46 +69,56 @@ def _blocks(elements: Elements, order: int, *, reduced: bool) -> Floats:
 
 
 def _scatter(elements: Elements, values: Floats) -> Any:
-    """Sum element blocks into a symmetric matrix of node blocks."""
+    """Sum element blocks (E, 55, 3, 3) into a symmetric matrix of node blocks."""
     from scipy import sparse
 
     count = len(elements.points)
-    first, second = elements.nodes[:, _FIRST], elements.nodes[:, _SECOND]
-    swap = first > second
+    first, second = elements.nodes[:, _FIRST].ravel(), elements.nodes[:, _SECOND].ravel()
     values = values.reshape(-1, 3, 3)
-    swapped = np.flatnonzero(swap.ravel())
+    swapped = np.flatnonzero(first > second)
     values[swapped] = values[swapped].swapaxes(1, 2)
-    keys = (np.minimum(first, second) * count + np.maximum(first, second)).ravel()
-    order, starts = _group(keys)
-    gather = sparse.csr_array(
-        (np.ones(len(order)), order, np.append(starts, len(order))), shape=(len(starts), len(order))
-    )
-    blocks = (gather @ values.reshape(-1, 9)).reshape(-1, 3, 3)
-    rows, columns = np.divmod(keys[order[starts]], count)
-    strict = rows < columns
-    blocks[~strict] = (blocks[~strict] + blocks[~strict].swapaxes(1, 2)) / 2
-    upper = _block_rows(rows, columns, blocks, count)
-    lower = _block_rows(columns[strict], rows[strict], blocks[strict].swapaxes(1, 2), count)
-    full = (upper + lower).tocsr()
-    full.sort_indices()
-    return full
+    rows, columns = np.minimum(first, second), np.maximum(first, second)
+    order = sorted_pairs(rows, columns, count)
+    rows, columns = rows[order], columns[order]
+    starts = np.flatnonzero(np.append(True, (np.diff(rows) != 0) | (np.diff(columns) != 0)))
+    ones = np.ones(len(order))
+    gather = sparse.csr_array((ones, order, np.append(starts, len(order))), shape=(len(starts), len(order)))
+    upper = (gather @ values.reshape(-1, 9)).reshape(-1, 3, 3)
+    return _mirrored(rows[starts], columns[starts], upper, count)
 
 
-def _group(keys: Ints) -> tuple[Ints, Ints]:
-    """Order that sorts the keys, and where each new key starts in it."""
-    order = np.argsort(keys, kind="stable")
-    ordered = keys[order]
-    starts = np.flatnonzero(np.append(True, ordered[1:] != ordered[:-1]))
-    return order, starts
-
-
-def _block_rows(rows: Ints, columns: Ints, blocks: Floats, count: int) -> Any:
-    """Blocks at (rows, columns) as a block-sparse matrix of `count` block rows."""
+def _mirrored(rows: Ints, columns: Ints, upper: Floats, count: int) -> Any:
+    """The symmetric matrix whose blocks on and above the diagonal are given."""
     from scipy import sparse
 
-    order = np.lexsort((columns, rows))
-    starts = np.searchsorted(rows[order], np.arange(count + 1))
-    return sparse.bsr_array((blocks[order], columns[order], starts), shape=(3 * count, 3 * count))
+    strict = np.flatnonzero(rows < columns)
+    diagonal = np.flatnonzero(rows == columns)
+    upper[diagonal] = (upper[diagonal] + upper[diagonal].swapaxes(1, 2)) / 2
+    all_rows, all_columns = np.append(rows, columns[strict]), np.append(columns, rows[strict])
+    order = sorted_pairs(all_rows, all_columns, count)
+    place = np.empty_like(order)
+    place[order] = np.arange(len(order))
+    blocks = np.empty((len(order), 3, 3))
+    blocks[place[: len(rows)]] = upper
+    blocks[place[len(rows) :]] = upper[strict].swapaxes(1, 2)
+    starts = np.append(0, np.cumsum(np.bincount(all_rows, minlength=count)))
+    size = (3 * count, 3 * count)
+    return sparse.bsr_array((blocks, all_columns[order].astype(np.int32), starts.astype(np.int32)), shape=size)
+
+
+def sorted_pairs(rows: Ints, columns: Ints, count: int) -> Ints:
+    """Order that sorts pairs of node numbers by row, then column: two counting sorts."""
+    by_column = _counting_sort(columns, count)
+    return by_column[_counting_sort(rows[by_column], count)]
+
+
+def _counting_sort(keys: Ints, count: int) -> Ints:
+    """Stable order of keys 0..count − 1: a compressed matrix of one entry a row, turned to columns."""
+    from scipy import sparse
+
+    number = np.arange(len(keys) + 1)
+    order: Ints = sparse.csr_array((number[:-1], keys, number), shape=(len(keys), count)).tocsc().data
+    return order
 
 
 def mass(elements: Elements) -> Any:

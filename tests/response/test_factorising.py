@@ -85,7 +85,7 @@ def test_points_in_one_place_still_get_an_order() -> None:
 
 
 def test_an_indefinite_matrix_is_refused() -> None:
-    matrix = sparse.csr_array(-np.eye(30))
+    matrix = sparse.bsr_array(-np.eye(30), blocksize=(3, 3))
 
     with pytest.raises(SolveError, match="not positive definite"):
         factorise(matrix, "fronts", np.zeros((10, 3)))
