@@ -21,14 +21,15 @@ from . import tables
 from .aero_tables import case_tables, load_case_tables
 from .bands import bands_svg
 from .cautions import cautions
-from .choice import governing_index, lowest, lowest_per_criterion
+from .choice import extreme_indices, governing_index, lowest, lowest_per_criterion
 from .colours import margin_legend, stress_legend
+from .diagram import diagram_svg
 from .echo import echo_svg
 from .faces import faces_svg
 from .pictures import Picture, Pictures
 from .routes import pad_table, routes
 from .run import RunLike
-from .suspension_tables import spin_table, suspension_tables
+from .suspension_tables import car_tables, suspension_tables
 from .wording import fixed, plain_name
 
 _XMLNS = " xmlns='http://www.w3.org/2000/svg'"
@@ -75,6 +76,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "loads": _load_tables(case, cases),
         "governing_faces": _inline(faces_svg(cases, index, key="governing")),
         "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in shown[1:]],
+        "diagram": _inline(diagram_svg(cases, index)),
         "studs": [*_pad_tables(run, shown[:1]), *(tables.stud_forces(cases, i) for i in shown)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
@@ -102,7 +104,8 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "unsourced": tables.unsourced(case),
         "loads": _load_tables(case, cases),
         "governing_faces": _inline(faces_svg(cases, index, key="governing")),
-        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in range(len(cases.names)) if i != index],
+        "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in extreme_indices(cases) if i != index],
+        "diagram": _inline(diagram_svg(cases, index)),
         "studs": [tables.stud_forces(cases, index)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
@@ -139,7 +142,7 @@ def _load_tables(case: Case, cases: LoadCases) -> list[tables.Table]:
         tables.device_table(case),
         *load_case_tables(cases),
         *suspension_tables(case, cases),
-        spin_table(case, cases),
+        *car_tables(case, cases),
         *case_tables(case),
     ]
 

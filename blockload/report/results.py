@@ -108,7 +108,12 @@ def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
         "acceleration": cases.acceleration[index].sum(axis=0),
         "angular_acceleration": cases.angular_acceleration[index].sum(axis=0),
         "wheels": {
-            corner: {"force": wheels[k], "at": _contact(case, corner), "friction_used": used[k]}
+            corner: {
+                "force": wheels[k],
+                "at": _contact(case, corner),
+                "friction_used": used[k],
+                **_use(cases, index, k),
+            }
             for k, corner in enumerate(CORNERS)
         },
         "links": links_written(cases, index),
@@ -199,6 +204,12 @@ def _same(line: Mapping[str, Any], sign: float, other: Mapping[str, Any]) -> boo
     size = np.abs(line["force"]).max() + np.abs(line["moment"]).max() + 1e-12
     gap = np.abs(line["force"] - force).max() + np.abs(line["moment"] - moment - np.cross(arm, force)).max()
     return bool(gap < 1e-9 * size)
+
+
+def _use(cases: LoadCases, index: int, wheel: int) -> dict[str, float]:
+    """Share of its grip that a tyre uses, where friction is known."""
+    known = len(cases.tyre_use) > 0 and np.isfinite(cases.tyre_use[index, wheel])
+    return {"tyre_use": cases.tyre_use[index, wheel]} if known else {}
 
 
 def _contact(case: Case, corner: str) -> np.ndarray[Any, Any]:

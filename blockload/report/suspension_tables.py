@@ -6,10 +6,13 @@ from collections.abc import Iterator
 
 import numpy as np
 
+from ..car.bodies import AXLES
+from ..car.brakes import brake_swap
 from ..car.model import LoadCases
 from ..car.spin import neglected
 from ..car.suspension import condition_notes
 from ..car.torque import engine_notes, power_train
+from ..car.transfer import share_range, transfer
 from ..case.model import CORNERS, Case
 from .tables import Table, table
 from .wording import ABSENT, figure, fixed, plain_name
@@ -19,7 +22,14 @@ _RPM = np.pi / 30.0
 
 def suspension_tables(case: Case, cases: LoadCases) -> tuple[Table, ...]:
     """Tables of links, power train and lifted wheels, each only where there is something to say."""
-    return tuple(item for item in (link_extremes(cases), power_table(case, cases), lifted_table(cases)) if item.rows)
+    found = (link_extremes(cases), power_table(case, cases), lifted_table(cases), grip_table(cases))
+    return tuple(item for item in found if item.rows)
+
+
+def car_tables(case: Case, cases: LoadCases) -> tuple[Table, ...]:
+    """What a reviewer of the loads asks next: roll couple by part, brakes swapped, what spins."""
+    found = (roll_table(case), brake_table(case), spin_table(case, cases))
+    return tuple(item for item in found if item.rows)
 
 
 def link_extremes(cases: LoadCases) -> Table:
@@ -68,6 +78,52 @@ def lifted_table(cases: LoadCases) -> Table:
         _lifted(cases),
         "On three wheels the loads follow from statics alone; a wheel in the air drives, brakes and steers nothing.",
     )
+
+
+def grip_table(cases: LoadCases) -> Table:
+    """Load cases that ask more of a tyre than its friction holds."""
+    rows = [
+        (plain_name(cases.names[c]), CORNERS[k], fixed(cases.tyre_use[c, k], 2))
+        for c, k in np.argwhere(cases.tyre_use > 1.0)
+    ]
+    note = (
+        "Share of the friction ellipse used, friction falling with load where stated. Above 1 the tyre slides: the "
+        "car cannot do this, unless kerb or impact forces are meant."
+    )
+    return table("Beyond grip", ("load case", "wheel", "grip used"), rows, note)
+
+
+def roll_table(case: Case) -> Table:
+    """Parts of the lateral load transfer per axle, and what another roll stiffness split would make of it."""
+    split = transfer(case)
+    parts = (("geometric", split.geometric), ("unsprung", split.unsprung), ("elastic", split.elastic))
+    rows = [
+        (name, *(fixed(abs(value), 2, scale=1e3) for value in part), fixed(100 * part[0] / part.sum(), 1))
+        for name, part in (*parts, ("whole", split.total))
+        if part.any()
+    ]
+    low, high = (fixed(100 * end, 1) for end in share_range(case))
+    note = (
+        "kN·m in a level turn of 1 g without aero. The front share of the whole is not that of the roll stiffness: "
+        f"with 40 and 60 % of the stiffness in front it runs from {low} to {high} %."
+    )
+    return table("Roll couple by axle", ("part", "front", "rear", "front share, %"), rows, note)
+
+
+def brake_table(case: Case) -> Table:
+    """What moving the brakes inboard or outboard would do: nothing to the faces, much to the links."""
+    rows = []
+    for name in AXLES if any(axle.links for axle in case.axles.values()) else ():
+        swap = brake_swap(case, name)
+        if swap is not None:
+            change = f"{fixed(swap.link_change, 2, scale=1e3)} kN ({swap.link})"
+            rows.append((name, case.axles[name].brakes, swap.to, figure(swap.face_change, digits=1), change))
+    note = (
+        "Over the braking load cases of this file. The faces stay as they are where all links of the axle end on one "
+        "body with the inboard brake; a link on another body carries part of the change across a face."
+    )
+    columns = ("axle", "brakes", "instead", "faces change by, N or N·m", "links change by up to")
+    return table("Where the brake torque is taken", columns, rows, note)
 
 
 def spin_table(case: Case, cases: LoadCases) -> Table:

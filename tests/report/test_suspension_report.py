@@ -11,10 +11,19 @@ from car.linked_car import FRONT_ENDS, FRONT_ROCKER, REAR_ENDS, REAR_ROCKER, lin
 from car.worked_car import CAR, FRONT, REAR, car, manoeuvre
 
 from blockload.car.balance import balance
-from blockload.case.model import Engine, Link, Rocker
+from blockload.car.brakes import brake_swap
+from blockload.case.model import Engine, Link, Rocker, Tyres
 from blockload.case.reading import read
 from blockload.report.results import load_case, reassembled_residual
-from blockload.report.suspension_tables import link_extremes, power_table, spin_table, suspension_tables
+from blockload.report.suspension_tables import (
+    brake_table,
+    grip_table,
+    link_extremes,
+    power_table,
+    roll_table,
+    spin_table,
+    suspension_tables,
+)
 
 CASES = Path(__file__).parents[2] / "cases"
 
@@ -81,6 +90,38 @@ def test_what_is_left_out_is_sized_or_called_unknown() -> None:
 
     assert len(rows) == 4
     assert all(row[0] for row in rows)
+
+
+def test_a_tyre_beyond_its_grip_is_named_with_its_load_case() -> None:
+    hard = manoeuvre("hard", speed=40.0, acceleration=(0, 24, 0))
+    cases = balance(car(tyres=Tyres(mu_x=1.7, mu_y=1.7)), [hard, CAR.manoeuvres[0]])
+    rows = grip_table(cases).rows
+
+    assert {row[0] for row in rows} == {"hard"}
+    assert ("hard", "FR") in {row[:2] for row in rows}
+    assert load_case(CAR, cases, 0)["wheels"]["FR"]["tyre_use"] > 1
+    assert grip_table(balance(CAR)).rows == (), "friction not known: nothing to say"
+
+
+def test_the_roll_table_parts_add_up() -> None:
+    rows = {row[0]: row for row in roll_table(CAR).rows}
+    parts = sum(float(rows[name][1]) for name in ("geometric", "unsprung", "elastic"))
+
+    assert parts == pytest.approx(float(rows["whole"][1]), abs=0.02)
+    assert rows["elastic"][3] == "54.2"
+
+
+def test_swapping_the_brakes_changes_links_and_no_face_on_one_body() -> None:
+    one = brake_swap(linked(), "rear")
+    assert one is not None
+    assert one.to == "inboard"
+    assert one.face_change < 1e-6
+    assert one.link_change > 1e3
+    leg = brake_swap(linked(rear_axle=rear(upper_fore={"carried_by": "engine"})), "rear")
+    assert leg is not None
+    assert leg.face_change > 1.0, "a leg on the engine takes its change across the rear face"
+    assert len(brake_table(linked()).rows) == 2
+    assert brake_swap(car(manoeuvres=CAR.manoeuvres[:1]), "rear") is None
 
 
 def points(link: Link) -> list[float]:
