@@ -1,1 +1,1 @@
-
+"""Criteria and verdict: one criterion a file."""
