@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from dataclasses import asdict
+from typing import Any
 
 from ..car.catalogue.coverage import coverage, ends
 from ..car.envelope import GROUP
@@ -69,7 +71,9 @@ def basis_table(cases: LoadCases) -> Table:
 
 
 def catalogue_tables(case: Case, cases: LoadCases) -> tuple[Table, ...]:
-    """All tables of this module that have something to say."""
+    """All tables of this module that have something to say; none for a case without catalogue or envelope."""
+    if case.catalogue is None and case.envelope is None:
+        return ()
     result = [coverage_table(case), ends_table(cases), basis_table(cases)]
     if case.envelope is not None:
         result.append(governing_table(cases))
@@ -77,6 +81,30 @@ def catalogue_tables(case: Case, cases: LoadCases) -> tuple[Table, ...]:
     if beyond:
         result.append(table("Beyond the tyres' grip", ("load case",), beyond))
     return tuple(item for item in result if item.rows)
+
+
+def situation_written(cases: LoadCases, index: int) -> dict[str, Any]:
+    """Return kind, group and basis of one load case, as they are written."""
+    if not cases.kind:
+        return {}
+    return {
+        "kind": cases.kind[index],
+        "fatigue_exempt": cases.fatigue_exempt[index],
+        "group": cases.group[index],
+        "basis": cases.basis[index],
+    }
+
+
+def coverage_written(case: Case, cases: LoadCases) -> dict[str, Any]:
+    """Return coverage, ends of the section components and what governs the envelope, as they are written."""
+    if case.catalogue is None and case.envelope is None:
+        return {}
+    rows = governing(cases, in_group(cases, GROUP))
+    return {
+        "situations": [asdict(row) for row in coverage(case)],
+        "section_ends": [asdict(row) for row in ends(cases)],
+        "envelope_governing": [asdict(row) for row in rows],
+    }
 
 
 def _some(names: list[str]) -> str:

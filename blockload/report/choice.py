@@ -25,6 +25,17 @@ def lowest_per_criterion(margins: Iterable[Margin]) -> list[Margin]:
     return list(first.values())
 
 
+def extreme_indices(cases: LoadCases) -> list[int]:
+    """Return the load cases that pull, press or shear some stud most, in the order of the cases."""
+    found: set[int] = set()
+    for face in cases.faces.values():
+        axial = face.stud_axial.sum(axis=1)
+        shear = np.linalg.norm(face.stud_shear.sum(axis=1), axis=-1)
+        for values in (axial, -axial, shear):
+            found |= {int(i) for i in values.argmax(axis=0)}
+    return sorted(found)
+
+
 def governing_index(cases: LoadCases, margins: Margins | None = None) -> int:
     """Return the load case to show first: that of the lowest margin, else that of the greatest stud force."""
     if margins is not None:

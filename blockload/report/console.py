@@ -18,6 +18,7 @@ from ..case.model import Case
 from ..margins.model import Margin, Margins
 from . import tables
 from .aero_tables import load_case_tables, remark_tables
+from .catalogue_tables import catalogue_tables
 from .cautions import ONE_LINE
 from .choice import governing_index, lowest, lowest_per_criterion
 from .suspension_tables import suspension_tables
@@ -64,6 +65,7 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         *load_case_tables(cases),
         *remark_tables(case),
         *suspension_tables(case, cases),
+        *catalogue_tables(case, cases),
     )
     failed = [item for item in case.checks if not item.ok]
     extra = [tables.check_table(failed, "Checks of the case file that failed")] if failed else []

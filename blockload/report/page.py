@@ -67,7 +67,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "governing": plain_name(verdict.governing),
         "echo": _inline(echo_svg(case, None)),
         "bands": _inline(bands_svg(lowest_per_criterion(margins.margins)[:7])) if margins.margins else "",
-        "words": [tables.section_in_words(cases, i) for i in shown[:2]],
+        "words": [tables.section_in_words(cases, index)],
         "routes": routes(cases, index, run.library, run.pads),
         "cautions": cautions(case),
         "not_judged": verdict.not_judged,

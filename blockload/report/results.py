@@ -19,6 +19,7 @@ from .. import __version__
 from ..car.model import BODIES, SECTION, LoadCases, Term
 from ..case.model import CORNERS, Case
 from .aero_results import aero_written
+from .catalogue_tables import coverage_written, situation_written
 from .files import write_beside
 from .suspension_results import links_written, tension_force, tension_line
 
@@ -43,6 +44,7 @@ def load_results(case: Case, cases: LoadCases, *, run_id: str = "loads", version
             "title": case.title,
             "inputs": {"case_sha256": case.sha256, "mesh_sha256": None, "overrides": list(case.overrides)},
             "load_cases": {name: load_case(case, cases, i) for i, name in enumerate(cases.names)},
+            **coverage_written(case, cases),
         }
     )
 
@@ -121,6 +123,7 @@ def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
         "faces": {name: _face(cases, name, index) for name in cases.faces},
         "free_bodies": {},
         **aero_written(cases, index),
+        **situation_written(cases, index),
     }
     written["free_bodies"] = {body: _terms(cases, body, index, written) for body in BODIES}
     data: dict[str, Any] = plain(written)
