@@ -54,29 +54,26 @@ def hold(inputs: Inputs, loads: Elementary, frame: Chassis) -> Held | None:
 
     Raises CaseError for supports that leave the car free to move, or that are no places of the car.
     """
-    groups: dict[tuple[Support, ...], list[int]] = {}
-    for c, supports in enumerate(inputs.supports):
-        if supports:
-            groups.setdefault(supports, []).append(c)
-    if not groups:
+    held = [c for c, supports in enumerate(inputs.supports) if supports]
+    if not held:
         return None
-    names = dict.fromkeys(support for supports in groups for support in supports)
-    reaction = {support: np.zeros((*loads.loads.shape[:2], 6)) for support in names}
+    named: dict[tuple[object, ...], tuple[Support, Floats]] = {}
     pulled = np.zeros(len(inputs.names), dtype=bool)
-    for supports, cases in groups.items():
-        where = f"[manoeuvres.{inputs.names[cases[0]]}] supports"
-        placed = [_placed(support, frame, where) for support in supports]
+    for c in held:
+        where = f"[manoeuvres.{inputs.names[c]}] supports"
+        placed = [_placed(support, frame, where) for support in inputs.supports[c]]
         rows, columns = _columns(placed, where)
-        total = loads.loads[cases].sum(axis=2)
-        answer = -total @ np.linalg.pinv(columns).T
-        for k, (support, component) in enumerate(rows):
-            reaction[supports[support]][cases, :, component] = answer[..., k]
-        pulled[cases] = _pulled(supports, rows, answer.sum(axis=1))
-    placed = [_placed(support, frame, "supports") for support in names]
+        answer = -loads.loads[c].sum(axis=1) @ np.linalg.pinv(columns).T
+        for k, (s, component) in enumerate(rows):
+            place = _place(placed[s])
+            if place not in named:
+                named[place] = placed[s], np.zeros((*loads.loads.shape[:2], 6))
+            named[place][1][c, :, component] += answer[:, k]
+        pulled[c] = _pulled(placed, rows, answer.sum(axis=0))
     return Held(
-        cases=np.array(sorted(c for cases in groups.values() for c in cases)),
-        supports=tuple(placed),
-        reaction=tuple(sealed(reaction[support]) for support in names),
+        cases=np.array(held),
+        supports=tuple(support for support, _ in named.values()),
+        reaction=tuple(sealed(reaction) for _, reaction in named.values()),
         pulled=pulled,
     )
 
@@ -131,6 +128,11 @@ def engine_supports(held: Held | None) -> Iterator[LocalLoad]:
         )
 
 
+def _place(support: Support) -> tuple[object, ...]:
+    """What two supports of different load cases share when they are one and the same."""
+    return support.name, support.on, tuple(np.asarray(support.at).tolist()), support.attachment
+
+
 def _placed(support: Support, frame: Chassis, where: str) -> Support:
     if support.on not in BODIES:
         raise CaseError(where, f"{support.name} is on {support.on!r}", ", ".join(BODIES), nearest(support.on, BODIES))
@@ -165,9 +167,7 @@ def _columns(supports: list[Support], where: str) -> tuple[list[tuple[int, int]]
     return rows, columns
 
 
-def _pulled(supports: tuple[Support, ...], rows: list[tuple[int, int]], answer: Floats) -> NDArray[np.bool_]:
-    """Whether a one-sided support along z would have to pull down, (H,), from reactions (H, k)."""
+def _pulled(supports: list[Support], rows: list[tuple[int, int]], answer: Floats) -> bool:
+    """Whether a one-sided support along z would have to pull down, from its load case's reactions (k,)."""
     one_sided = np.array([component == 2 and not supports[s].bolted for s, component in rows])
-    size = np.abs(answer).sum(axis=1, keepdims=True)
-    result: NDArray[np.bool_] = ((answer < -_ROUNDING * size) & one_sided).any(axis=1)
-    return result
+    return bool(((answer < -_ROUNDING * np.abs(answer).sum()) & one_sided).any())

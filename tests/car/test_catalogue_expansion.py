@@ -40,7 +40,7 @@ def test_every_load_case_is_balanced_and_agrees_from_front_and_rear() -> None:
 
 
 def test_performance_alone_builds_the_whole_steady_set() -> None:
-    bare = Performance(speed=75.0, power=360e3, lateral=20.0, braking=30.0, traction=9.0)
+    bare = Performance(speed=75.0, lateral=20.0, braking=30.0, traction=9.0)
     found = expansion(replace(CAR, manoeuvres=(), performance=bare, catalogue=spec("steady")))
 
     assert found.omissions == ()
