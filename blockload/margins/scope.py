@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from ..car.catalogue.expanding import expansion
 from ..car.model import LoadCases
 from ..case.model import Case
 
@@ -25,6 +26,7 @@ SOLID_LATER = (
     "opening at a sharp edge or under a pad beyond the idealised load",
     "the centripetal part of the inertia inside the block (its size is in the checks)",
 )
+_ROUNDING = 1e-9  # of the wheel loads: a push below it is none
 FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
 
 
@@ -33,7 +35,8 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
     gaps: list[str] = []
     if case.installation.second_paths is None and not case.paths:
         gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
-    without = _without_ratio(case, cases)
+    gaps += [f"{gap.situation}: {gap.why}" for gap in expansion(case).omissions]
+    without = _without_ratio(cases)
     if without:
         gaps.append(f"crank torque without an overall ratio: {', '.join(without)}")
     if case.limits.torsion_min is None:
@@ -48,9 +51,9 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
     return (*gaps, *scope, *ALWAYS)
 
 
-def _without_ratio(case: Case, cases: LoadCases) -> list[str]:
-    """Driven load cases whose crank torque is unknown."""
-    driven = {item.name for item in case.manoeuvres if item.drive in ("hold_speed", "accelerate") and item.speed > 0.0}
-    driven |= {item.name for item in case.manoeuvres if item.drive == "accelerate"}
-    unknown = np.isnan(cases.crank_torque)
-    return [name for name, missing in zip(cases.names, unknown, strict=True) if missing and name in driven]
+def _without_ratio(cases: LoadCases) -> list[str]:
+    """Load cases whose tyres push the car with a crank torque that is unknown."""
+    push = cases.wheels[..., 0].sum(axis=1)
+    weight = np.abs(cases.wheels[..., 2]).sum(axis=1)
+    unknown = np.isnan(cases.crank_torque) & (push > _ROUNDING * weight)
+    return [name for name, missing in zip(cases.names, unknown, strict=True) if missing]

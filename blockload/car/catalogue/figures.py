@@ -36,7 +36,7 @@ class Omission:
 
 def left_out(group: str, situation: str, key: str, what: str) -> Omission:
     """The omission of a situation for want of one key of the case file."""
-    return Omission(group=group, situation=situation, why=f"{what} is not given", remedy=f"add {key}")
+    return Omission(group=group, situation=situation, why=f"not given: {what}", remedy=f"add {key}")
 
 
 def fast_corner(case: Case) -> float | None:
