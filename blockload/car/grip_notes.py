@@ -12,7 +12,7 @@ import numpy as np
 from ..arrays import Floats
 from ..case.model import Case
 from .bodies import AXLES
-from .envelope import axle_use
+from .limits import axle_use
 from .model import LoadCases
 
 _SLACK = 2e-3  # a crank's own couple moves load between two tyres at their limit by this much

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from ..car.catalogue.coverage import ends
 from ..car.catalogue.expanding import expansion
 from ..car.model import LoadCases
 from ..case.model import Case
@@ -36,6 +37,7 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
     if case.installation.second_paths is None and not case.paths:
         gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
     gaps += [f"{gap.situation}: {gap.why}" for gap in expansion(case).omissions]
+    gaps += _signs_that_never_turn(cases)
     without = _without_ratio(cases)
     if without:
         gaps.append(f"crank torque without an overall ratio: {', '.join(without)}")
@@ -49,6 +51,16 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
         gaps.append(f"the engine maker's consent to chassis loads: {case.engine_maker_consent}")
     scope = FACES_ONLY if level == "faces" else SOLID_LATER
     return (*gaps, *scope, *ALWAYS)
+
+
+def _signs_that_never_turn(cases: LoadCases) -> list[str]:
+    """One gap for section components of one sign alone, with the situations that would turn them."""
+    rows = [row for row in ends(cases) if row.missing]
+    if not rows:
+        return []
+    names = ", ".join(f"{row.face} {row.component}" for row in rows)
+    groups = ", ".join(dict.fromkeys(group for row in rows for group in row.missing))
+    return [f"the other sign of {names}: no load case turns it (situations that would: {groups})"]
 
 
 def _without_ratio(cases: LoadCases) -> list[str]:

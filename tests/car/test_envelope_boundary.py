@@ -10,9 +10,10 @@ from car.catalogue_car import PERFORMANCE, TYRES, with_envelope
 from car.worked_car import CAR
 
 from blockload.car.balance import balance
-from blockload.car.envelope import LIMITS, axle_use, boundary, envelope, vertices
+from blockload.car.envelope import boundary, envelope, vertices
 from blockload.car.governing import governing, in_group
 from blockload.car.grip_notes import grip_used
+from blockload.car.limits import LIMITS, axle_use
 from blockload.case.model import Performance, Tyres
 from blockload.errors import CaseError
 
@@ -137,3 +138,15 @@ def test_vertices_push_or_brake_as_the_tyres_must() -> None:
         assert item.drive in ("accelerate", "brake")
         assert item.group == "envelope"
         assert "boundary of grip and power" in (item.basis or "")
+
+
+def test_a_tall_car_is_limited_by_tipping_before_grip() -> None:
+    """The vertex names it, and a second wheel is at the point of lifting there."""
+    bodies = {name: replace(body, cg=body.cg + np.array((0.0, 0.0, 0.9))) for name, body in CAR.bodies.items()}
+    case = with_envelope(4, (5.0,), bodies=bodies)
+    found, cases = envelope(case), balance(case)
+
+    assert LIMITS[found.limit[0, 1]] == "two wheels off the ground"
+    loads = np.sort(cases.wheels[1, :, 2])
+    assert abs(loads[1]) < 1e-6 * loads.sum()
+    assert not cases.wheel_lift[1]
