@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import secrets
 import tempfile
 from collections.abc import Callable
 from pathlib import Path
@@ -26,18 +27,15 @@ def write_text(path: Path, text: str) -> None:
 
 def fill_beside(path: Path, fill: Callable[[Path], None]) -> None:
     """Let `fill` write a temporary file of the same ending beside `path`, then rename it into place."""
-    temporary: Path | None = None
+    temporary = path.parent / f".part-{secrets.token_hex(6)}{path.suffix}"
     try:
         path.parent.mkdir(parents=True, exist_ok=True)
-        handle, name = tempfile.mkstemp(dir=path.parent, prefix=".part-", suffix=path.suffix)
-        os.close(handle)
-        temporary = Path(name)
-        fill(temporary)
-        temporary.chmod(0o644)
-        os.replace(temporary, path)
-    except OSError as error:
-        if temporary is not None:
+        try:
+            fill(temporary)
+            os.replace(temporary, path)
+        finally:
             temporary.unlink(missing_ok=True)
+    except OSError as error:
         raise refusal(path, error) from error
 
 

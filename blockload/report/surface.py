@@ -105,7 +105,7 @@ def equivalent(stress: Floats) -> Floats:
 
 
 def write_fields(path: Path, seen: Surface, *, run_id: str) -> None:
-    """Write fields.vtu: ten fields on the surface, names of cases, volumes and criteria beside them.
+    """Write fields.vtu: ten fields on the surface, with names for the numbers of cases, volumes and criteria.
 
     Raises
     ------
@@ -135,14 +135,23 @@ def write_fields(path: Path, seen: Surface, *, run_id: str) -> None:
     }
     for name, values in fields.items():
         grid.point_data[name] = values
-    words = {
-        "run id": [run_id],
-        "load case of stress and displacement": [seen.load_case],
-        "load cases": list(seen.cases),
-        "volumes": list(seen.volumes),
-        "criteria": [criterion.name for criterion in CRITERIA],
-    }
-    for name, texts in words.items():
-        grid.field_data[name] = texts
+    for name, number in _legend(seen, run_id).items():
+        grid.field_data[name] = np.array([number])
     save: Callable[[Path], None] = grid.save
     fill_beside(path, save)
+
+
+def _legend(seen: Surface, run_id: str) -> dict[str, int]:
+    """What the numbers of the fields stand for, as names with a number: texts would shut some readers out."""
+    named = {
+        f"run {run_id}": 0,
+        f"stress and displacement are of {seen.load_case}": seen.cases.index(seen.load_case),
+        "displacement is against the tub": 0,
+    }
+    for kind, names in (
+        ("load case", seen.cases),
+        ("volume", seen.volumes),
+        ("criterion", tuple(criterion.name for criterion in CRITERIA)),
+    ):
+        named |= {f"{kind} {k} is {name}": k for k, name in enumerate(names)}
+    return named
