@@ -1,0 +1,8 @@
+"""Lets the hostile meshes share the tiny block of tests/block."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+
+sys.path.insert(0, str(Path(__file__).parents[1] / "block"))
