@@ -10,6 +10,7 @@ from .wording import band, fixed, plain_name
 
 LEFT, RIGHT, ROW = 470.0, 930.0, 28.0
 LEAST, MOST = -0.6, 2.0
+BELOW, ABOVE = "#8a4b08", "#246596"
 
 
 def bands_svg(margins: Sequence[Margin], *, key: str = "bands") -> str:
@@ -36,12 +37,18 @@ def _row(sketch: Sketch, item: Margin, y: float) -> None:
     low, high = (None if end is None else float(end) for end in ends)
     shown = band(item.band, item.margin)
     if low is not None and high is not None:
-        a, b = _x(low), _x(high)
-        fill = "#8a4b08" if low < 0 else "#246596"
-        sketch.add(rect((a - 2, y - 9, max(b, a) + 2, y + 3), fill=fill, stroke="#fff", width=1.5))
-        sketch.add(circle((a, y - 3), 5.5, fill="#fff", stroke=fill, width=3))
+        _bar(sketch, _x(low), _x(high), y - 3)
     trust = "" if item.trust == "converged" else f" ({item.trust})"
     sketch.add(text((RIGHT + 14, y + 1), _cut(f"{shown}{trust}", 34), size=SMALL))
+
+
+def _bar(sketch: Sketch, start: float, end: float, y: float) -> None:
+    """A bar in two parts, brown below zero margin and blue above it, its worse end a ring."""
+    zero = _x(0.0)
+    for fill, a, b in ((BELOW, start, min(end, zero)), (ABOVE, max(start, zero), end)):
+        if b > a:
+            sketch.add(rect((a, y - 6, b, y + 6), fill=fill, stroke="none"))
+    sketch.add(circle((start, y), 5.5, fill="#fff", stroke=BELOW if start < zero else ABOVE, width=3))
 
 
 def _x(margin: float) -> float:

@@ -24,7 +24,7 @@ from .wording import (
 )
 
 Row = tuple[str, ...]
-_NUMERIC = re.compile(rf"\[?[+{MINUS}]?\d[\d.,e+{MINUS}-]*( to [+{MINUS}]?\d[\d.]*)?\]?|{ABSENT}|")
+_NUMERIC = re.compile(rf"\[?[+{MINUS}>]?\d[\d.,e+{MINUS}-]*( to [+{MINUS}>]?\d[\d.]*)?\]?|{ABSENT}|")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

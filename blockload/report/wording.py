@@ -26,6 +26,9 @@ SECTION_WORDS = {
 }
 
 
+_MOST = 99  # a margin beyond this is as good as no load: its digits say nothing
+
+
 def figure(value: float | None, *, scale: float = 1.0, digits: int = 3, sign: bool = False) -> str:
     """Return value / scale with this many significant figures; a dash where there is no finite value."""
     if value is None or not math.isfinite(value):
@@ -61,9 +64,9 @@ def point(at: Iterable[float], places: int = 3) -> str:
 
 
 def band(values: Sequence[float] | None, value: float | None = None) -> str:
-    """Return "0.12 to 0.41", or one number where both ends agree to the digits shown."""
+    """Return "0.12 to 0.41", one number where both ends agree to the digits shown, ">99" beyond that."""
     ends = [value] if values is None else list(values)
-    texts = [fixed(x, 2) for x in ends]
+    texts = [f">{_MOST}" if x is not None and x > _MOST else fixed(x, 2) for x in ends]
     return texts[0] if len(set(texts)) == 1 else " to ".join(texts)
 
 

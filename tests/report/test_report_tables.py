@@ -40,6 +40,7 @@ def test_a_band_is_said_as_two_ends_and_as_one_number_where_they_agree() -> None
     assert band((0.1234, 0.4051)) == "0.12 to 0.41"
     assert band((0.121, 0.119)) == "0.12"
     assert band(None, None) == ABSENT
+    assert band((0.11, 999.0)) == "0.11 to >99"
 
 
 def test_a_rounded_zero_carries_no_sign() -> None:
@@ -73,7 +74,7 @@ def test_a_stud_that_is_never_pressed_says_so() -> None:
 
 
 def test_columns_of_numbers_are_recognised() -> None:
-    made = tables.table("t", ("a", "b", "c"), [("x", "−1.5", "0.12 to 0.41"), ("y", ABSENT, "[+3]")])
+    made = tables.table("t", ("a", "b", "c"), [("x", "−1.5", "0.12 to 0.41"), ("y", ABSENT, "0.11 to >99")])
 
     assert [made.numeric(k) for k in range(3)] == [False, True, True]
 
