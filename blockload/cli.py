@@ -10,6 +10,7 @@ import sys
 import traceback
 from collections.abc import Iterator
 from contextlib import contextmanager
+from enum import StrEnum
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
@@ -35,7 +36,19 @@ Overrides = Annotated[
     list[str] | None,
     typer.Option("--set", metavar="KEY=VALUE", help="Lay one key over the case file; may be repeated."),
 ]
-Solver = Annotated[str, typer.Option(help="Direct solver: auto, fronts, scipy, ngsolve or pypardiso.")]
+
+
+class SolverName(StrEnum):
+    """The direct solvers one may ask for; which of them are installed is told by `info`."""
+
+    AUTO = "auto"
+    FRONTS = "fronts"
+    SCIPY = "scipy"
+    NGSOLVE = "ngsolve"
+    PYPARDISO = "pypardiso"
+
+
+Solver = Annotated[SolverName, typer.Option(help="Direct solver; auto takes the quickest installed.")]
 
 
 @app.command()
@@ -45,7 +58,7 @@ def check(
     output: Annotated[
         Path | None, typer.Option("--output", metavar="DIR", help="Where to write; default runs/<case name>.")
     ] = None,
-    solver: Solver = "auto",
+    solver: Solver = SolverName.AUTO,
     pictures: Annotated[bool, typer.Option(help="Draw the block for the report.")] = True,
 ) -> None:
     """Go from the car's figures to margins and a report: the main job."""

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import re
-import warnings
 from dataclasses import replace
 from pathlib import Path
 
@@ -11,6 +10,7 @@ import demo
 import numpy as np
 import pytest
 
+from blockload import pipeline
 from blockload.block.building import build
 from blockload.car.balance import balance
 from blockload.car.model import SECTION
@@ -18,6 +18,7 @@ from blockload.case.reading import read
 from blockload.errors import BlockError, CaseError
 from blockload.installation.install import install
 from blockload.margins.judging import judge
+from blockload.report.suspension_tables import lifted_table
 from blockload.response.cuts import section_stress
 
 STAMP = "chassis load only: no assembly, gas or heat"
@@ -148,7 +149,6 @@ def test_a_combination_of_load_cases_equals_the_case_of_the_combination() -> Non
 
 
 def test_a_second_run_does_not_touch_the_factorisation(monkeypatch: pytest.MonkeyPatch) -> None:
-    from blockload import pipeline
     from blockload.response import respond
 
     first = demo.run()
@@ -181,10 +181,19 @@ def test_the_concept_needs_at_most_25_numbers_and_answers_at_level_faces() -> No
     assert run.block is None
 
 
-def test_a_wheel_load_below_zero_is_flagged_and_nothing_is_shown() -> None:
-    with warnings.catch_warnings():
-        warnings.simplefilter("error")
-        run = demo.run("demo", "manoeuvres.corner_left.acceleration=(0, 38, 0) m/s^2")
+def test_a_lifted_wheel_is_solved_on_three_wheels_and_said() -> None:
+    _, cases = pipeline.loads(demo.CASES / "demo.toml", ["manoeuvres.corner_left.acceleration=(0, 42, 0) m/s^2"])
+    corner = cases.names.index("corner_left")
 
-    assert run.cases.wheel_lift.any() or (run.cases.wheels[..., 2] < 1e-6).any()
-    assert run.margins.verdict.word in ("not shown", "ruled out")
+    assert cases.lifted[corner].tolist() == [True, False, False, False]
+    assert cases.wheels[corner, 0, 2] == pytest.approx(0.0, abs=1e-6)
+    assert not cases.wheel_lift[corner]
+    assert "FL" in " ".join(lifted_table(cases).rows[0])
+
+
+def test_a_car_that_would_tip_is_flagged_and_nothing_is_shown() -> None:
+    run = demo.run("demo", "manoeuvres.corner_left.acceleration=(0, 90, 0) m/s^2")
+
+    assert run.cases.wheel_lift.any()
+    assert run.margins.verdict.word == "not shown"
+    assert any("wheel" in reason for reason in run.margins.verdict.reasons)
