@@ -6,7 +6,8 @@ from collections.abc import Iterable, Mapping
 from typing import Any
 
 from ..car.model import SECTION
-from .tables import Table, amount, table
+from .judged_tables import amount
+from .tables import Table, table
 from .wording import ABSENT, fixed, plain_name
 
 Data = Mapping[str, Any]

@@ -16,7 +16,7 @@ from rich.text import Text
 from ..car.model import SECTION, LoadCases
 from ..case.model import Case
 from ..margins.model import Margin, Margins
-from . import tables
+from . import judged_tables, tables
 from .aero_tables import load_case_tables, remark_tables
 from .catalogue_tables import catalogue_tables
 from .cautions import ONE_LINE
@@ -68,7 +68,7 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         *catalogue_tables(case, cases),
     )
     failed = [item for item in case.checks if not item.ok]
-    extra = [tables.check_table(failed, "Checks of the case file that failed")] if failed else []
+    extra = [judged_tables.check_table(failed, "Checks of the case file that failed")] if failed else []
     return [Text(case.title, style="bold"), Text(""), *render((*chosen, *extra)), Text(ONE_LINE, style="dim")]
 
 

@@ -6,30 +6,27 @@ faces are seen from behind. A body's outline is the homogeneous box of its mass 
 
 from __future__ import annotations
 
-import math
-
 import numpy as np
 
 from ..arrays import Floats
 from ..car.model import LoadCases
-from ..case.model import Axle, Body, Case, Device
+from ..case.model import Axle, Case
 from .choice import governing_index
 from .drawing import (
     BODY_COLOURS,
     GREY,
-    NORMAL,
     PALE,
     SMALL,
     Sketch,
     View,
     arrow,
-    cg_mark,
     circle,
     dimension,
     line,
     rect,
     text,
 )
+from .echo_marks import axes_at_origin, box, bubble, marks, outline, swatch
 from .faces import describe, draw_forces, draw_studs
 from .wording import fixed, plain_name, point
 
@@ -87,22 +84,8 @@ def _extent(case: Case) -> tuple[float, float]:
     """Least and greatest x that must be in the picture."""
     xs = [d.at[0] for d in case.devices]
     xs += [x for axle in case.axles.values() for x in (axle.x - axle.loaded_radius, axle.x + axle.loaded_radius)]
-    xs += [x for body in case.bodies.values() for x in _box(case, body)[:, 0]]
+    xs += [x for body in case.bodies.values() for x in box(case, body)[:, 0]]
     return min(xs) - 0.20, max(xs) + 0.30
-
-
-def _box(case: Case, body: Body) -> Floats:
-    """Lower and upper corner of a body's equivalent box, cut at the faces, (2, 3)."""
-    xx, yy, zz = np.diag(body.inertia)
-    squares = 6.0 / body.mass * np.array([yy + zz - xx, xx + zz - yy, xx + yy - zz])
-    half = 0.5 * np.sqrt(np.clip(squares, 0.04, None))
-    corners = np.array([body.cg - half, body.cg + half])
-    front, rear = case.faces["front"].x, case.faces["rear"].x
-    least, most = {"tub": (front, np.inf), "engine": (rear, front), "gearbox": (-np.inf, rear)}[body.name]
-    if body.name == "engine":
-        corners[:, 0] = rear, front
-    corners[:, 0] = np.clip(corners[:, 0], least, most)
-    return corners
 
 
 def _side(sketch: Sketch, case: Case, view: View) -> None:
@@ -112,7 +95,7 @@ def _side(sketch: Sketch, case: Case, view: View) -> None:
     for axle in case.axles.values():
         _wheel_side(sketch, axle, view)
     for body in case.bodies.values():
-        _outline(sketch, case, body, view, (0, 2))
+        outline(sketch, case, body, view, (0, 2))
     studs_top = max(s.at[1] for f in case.faces.values() for s in f.studs)
     for face in case.faces.values():
         foot, head = view.at(face.x, 0.0), view.at(face.x, studs_top + 0.16)
@@ -128,8 +111,8 @@ def _side(sketch: Sketch, case: Case, view: View) -> None:
         sketch.take((head[0] - (width if front else 0), head[1] - 10, head[0] + (0 if front else width), head[1] + 6))
         words = f"x = {fixed(face.x, 3)} m"
         sketch.add(text((foot[0] + shift, foot[1] + 20), words, size=SMALL, anchor=anchor))
-    _axes(sketch, view, ("x", "z"))
-    _marks(sketch, case, view, (0, 2))
+    axes_at_origin(sketch, view, ("x", "z"))
+    marks(sketch, case, view, (0, 2))
     _travel(sketch, (150, 18))
     y = view.origin[1] + 44
     ends = [(view.at(case.axles[name].x, 0)[0], y) for name in ("front", "rear")]
@@ -145,71 +128,6 @@ def _wheel_side(sketch: Sketch, axle: Axle, view: View) -> None:
         circle(centre, view.scale * axle.loaded_radius, fill=fill, stroke=stroke, width=1.4),
         circle(centre, view.scale * axle.loaded_radius * 0.6, stroke=stroke, width=0.8),
     )
-
-
-def _outline(sketch: Sketch, case: Case, body: Body, view: View, axes: tuple[int, int]) -> None:
-    corners = _box(case, body)
-    a, b = (view.at(*corner[list(axes)]) for corner in corners)
-    _, stroke, _ = BODY_COLOURS[body.name]
-    shape = rect((*a, *b), fill=f"url(#{sketch.key}-{body.name})", stroke=stroke, width=1.4, round_=4)
-    sketch.add(f"<g opacity='0.85' data-body='{body.name}'>{shape}</g>")
-
-
-def _marks(sketch: Sketch, case: Case, view: View, axes: tuple[int, int]) -> None:
-    """CGs with names, devices as numbered bubbles in the colour of the body that carries them."""
-    bodies = [(body.name, body, body.cg) for body in case.bodies.values()]
-    for axle in case.axles.values():
-        bodies.append(("corner", axle.corner, axle.corner.cg))
-        if axes == (0, 1):
-            bodies.append(("corner", axle.corner, axle.corner.cg * (1, -1, 1)))
-    spots = [view.at(*cg[list(axes)]) for *_, cg in bodies]
-    for (kind, _, _), (x, y) in zip(bodies, spots, strict=True):
-        size = 7.0 if kind != "corner" else 5.0
-        sketch.add(cg_mark((x, y), BODY_COLOURS[kind][1], size))
-        sketch.take((x - size - 1, y - size - 1, x + size + 1, y + size + 1))
-    bubbles = [view.at(*d.at[list(axes)]) for d in case.devices]
-    if axes == (0, 2):
-        for device, spot in zip(case.devices, bubbles, strict=True):
-            _device_arrows(sketch, device, spot)
-    for x, y in bubbles:
-        sketch.take((x - 10, y - 10, x + 10, y + 10))
-    for k, device in enumerate(case.devices):
-        place = _clear_of(bubbles[k], bubbles[:k])
-        if place != bubbles[k]:
-            sketch.add(line(bubbles[k], place, stroke=GREY, width=0.8))
-            bubbles[k] = place
-        sketch.add(_bubble(place, k + 1, device))
-    for (kind, body, _), spot in zip(bodies, spots, strict=True):
-        if kind != "corner":
-            sketch.label(spot, (body.name,), size=NORMAL, clear=10, toward=math.pi / 2)
-
-
-def _clear_of(spot: tuple[float, float], others: list[tuple[float, float]]) -> tuple[float, float]:
-    """Lift a bubble until it covers none of the others."""
-    x, y = spot
-    while any(math.dist((x, y), other) < 19 for other in others):
-        y -= 10
-    return x, y
-
-
-def _device_arrows(sketch: Sketch, device: Device, spot: tuple[float, float]) -> None:
-    """Downforce from above, drag from ahead, ending at the device; 22 px per m² of area."""
-    if device.table is not None:
-        return  # a map has no one area to draw
-    stroke = BODY_COLOURS[device.on][1]
-    for area, (ux, uy) in ((device.downforce_area, (0, 1)), (device.drag_area, (1, 0))):
-        if area:
-            near, far = math.copysign(9, area), math.copysign(19, area) + 22 * area
-            start, end = (spot[0] - far * ux, spot[1] - far * uy), (spot[0] - near * ux, spot[1] - near * uy)
-            sketch.add(arrow(start, end, stroke=stroke, width=2.2))
-            sketch.take_line(start, end)
-
-
-def _bubble(spot: tuple[float, float], number: int, device: Device) -> str:
-    fill, stroke, _ = BODY_COLOURS[device.on]
-    mark = circle(spot, 9, fill=fill, stroke=stroke, width=1.6)
-    digits = text((spot[0], spot[1] + 4), str(number), size=SMALL, anchor="middle", weight="bold")
-    return f"<g class='device' data-on='{device.on}' data-number='{number}'>{mark}{digits}</g>"
 
 
 def _plan(sketch: Sketch, case: Case, view: View, half: float) -> None:
@@ -229,7 +147,7 @@ def _plan(sketch: Sketch, case: Case, view: View, half: float) -> None:
         for tip, edge in zip(ends, (-1, 1), strict=True):
             sketch.add(line(view.at(axle.x, edge * axle.track / 2), tip, stroke=GREY, width=0.6, dash="3 3"))
     for body in case.bodies.values():
-        _outline(sketch, case, body, view, (0, 1))
+        outline(sketch, case, body, view, (0, 1))
     for face in case.faces.values():
         reach = max(abs(s.at[0]) for s in face.studs) + 0.12
         a, b = view.at(face.x, -reach), view.at(face.x, reach)
@@ -238,21 +156,11 @@ def _plan(sketch: Sketch, case: Case, view: View, half: float) -> None:
         for stud in face.studs:
             x, y = view.at(face.x, stud.at[0])
             sketch.add(line((x - 5, y), (x + 5, y), width=3))
-    _axes(sketch, view, ("x", "y"))
-    _marks(sketch, case, view, (0, 1))
+    axes_at_origin(sketch, view, ("x", "y"))
+    marks(sketch, case, view, (0, 1))
     middle = 0.5 * (case.faces["front"].x + case.faces["rear"].x)
     for y_at, words in ((-half + 0.1, "car's right (−y)"), (half - 0.06, "car's left (+y)")):
         sketch.add(text(view.at(middle, y_at), words, size=SMALL, anchor="middle", fill=GREY))
-
-
-def _axes(sketch: Sketch, view: View, names: tuple[str, str]) -> None:
-    """Axes at the car's origin."""
-    at = view.at(0, 0)
-    for name, end in ((names[0], view.at(0.22, 0)), (names[1], view.at(0, 0.22))):
-        sketch.add(arrow(at, end, stroke="#a3231f", width=2.0))
-        shift = (-7, -5) if name == "x" else (6, 4 if name == "z" else 8)
-        sketch.add(text((end[0] + shift[0], end[1] + shift[1]), name, size=NORMAL, weight="bold", fill="#a3231f"))
-        sketch.take_line(at, end, 6)
 
 
 def _travel(sketch: Sketch, at: tuple[float, float]) -> None:
@@ -270,7 +178,7 @@ def _lists(sketch: Sketch, case: Case) -> float:
     rows += [("corner", f"{axle.name} corner", axle.corner) for axle in case.axles.values()]
     for kind, name, body in rows:
         y += 24
-        sketch.add(_swatch(sketch, x, y, kind), text((x + 36, y), f"{name}, {body.mass:.4g} kg"))
+        sketch.add(swatch(sketch, x, y, kind), text((x + 36, y), f"{name}, {body.mass:.4g} kg"))
         sketch.add(text((WIDTH - 8, y), point(body.cg), size=SMALL, anchor="end", fill=GREY))
     y += 24
     mass, cg = _whole(case)
@@ -280,7 +188,7 @@ def _lists(sketch: Sketch, case: Case) -> float:
     sketch.add(text((x, y), "Devices: carried by; area down, drag", weight="bold"))
     for k, device in enumerate(case.devices):
         y += 26
-        sketch.add(_bubble((x + 10, y - 4), k + 1, device), _swatch(sketch, x + 26, y, device.on))
+        sketch.add(bubble((x + 10, y - 4), k + 1, device), swatch(sketch, x + 26, y, device.on))
         sketch.add(text((x + 60, y), f"{plain_name(device.name)}: {device.on}"))
         areas = f"{fixed(device.downforce_area, 2)}, {fixed(device.drag_area, 2)} m²"
         areas = "from a map" if device.table is not None else areas
@@ -294,10 +202,6 @@ def _lists(sketch: Sketch, case: Case) -> float:
         sketch.add(text((x, y), words, size=SMALL, fill=GREY))
         y += 17
     return y
-
-
-def _swatch(sketch: Sketch, x: float, y: float, kind: str) -> str:
-    return rect((x, y - 11, x + 28, y + 3), fill=f"url(#{sketch.key}-{kind})", stroke=BODY_COLOURS[kind][1], round_=2)
 
 
 def _whole(case: Case) -> tuple[float, Floats]:

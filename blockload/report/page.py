@@ -17,7 +17,7 @@ from .. import __version__
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..margins.model import Margins
-from . import tables
+from . import judged_tables, tables
 from .aero_tables import case_tables, load_case_tables
 from .bands import bands_svg
 from .cautions import cautions
@@ -71,7 +71,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "routes": routes(cases, index, run.library, run.pads),
         "cautions": cautions(case),
         "not_judged": verdict.not_judged,
-        "unsourced": tables.unsourced(case),
+        "unsourced": judged_tables.unsourced(case),
         "pictures": _block_pictures(pictures),
         "loads": _load_tables(case, cases),
         "governing_faces": _inline(faces_svg(cases, index, key="governing")),
@@ -80,11 +80,11 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "studs": [*_pad_tables(run, shown[:1]), *(tables.stud_forces(cases, i) for i in shown)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
-        "margins": [tables.margin_table(worst), tables.cause_table(worst[:24])],
+        "margins": [judged_tables.margin_table(worst), judged_tables.cause_table(worst[:24])],
         "stiffness": _stiffness(margins),
-        "requirements": tables.requirement_tables(margins),
+        "requirements": judged_tables.requirement_tables(margins),
         "checks": _checks(case, margins),
-        "assumptions": tables.assumption_tables(case, margins),
+        "assumptions": judged_tables.assumption_tables(case, margins),
     }
     return _render("page.html", values | _identity(run.run_id, case, made, run.block.sha256 if run.block else None))
 
@@ -101,7 +101,7 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "routes": routes(cases, index),
         "cautions": cautions(case),
         "not_judged": ("everything: this page shows loads, no margin",),
-        "unsourced": tables.unsourced(case),
+        "unsourced": judged_tables.unsourced(case),
         "loads": _load_tables(case, cases),
         "governing_faces": _inline(faces_svg(cases, index, key="governing")),
         "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in extreme_indices(cases) if i != index],
@@ -109,8 +109,8 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "studs": [tables.stud_forces(cases, index)],
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
-        "checks": [tables.check_table(case.checks, "Checks of the case file")] if case.checks else [],
-        "assumptions": tables.assumption_tables(case, None),
+        "checks": [judged_tables.check_table(case.checks, "Checks of the case file")] if case.checks else [],
+        "assumptions": judged_tables.assumption_tables(case, None),
     }
     empty: dict[str, Any] = {
         "lowest": None,
@@ -154,12 +154,12 @@ def _pad_tables(run: RunLike, indices: Iterable[int]) -> list[tables.Table]:
 
 
 def _stiffness(margins: Margins) -> list[tables.Table]:
-    return [tables.stiffness_table(margins)] if margins.stiffness else []
+    return [judged_tables.stiffness_table(margins)] if margins.stiffness else []
 
 
 def _checks(case: Case, margins: Margins) -> list[tables.Table]:
     found = [("Checks of the case file", case.checks), ("Checks of this run", margins.checks)]
-    return [tables.check_table(checks, title) for title, checks in found if checks]
+    return [judged_tables.check_table(checks, title) for title, checks in found if checks]
 
 
 def _block_pictures(pictures: Pictures | None) -> dict[str, Any] | None:

@@ -9,17 +9,14 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..car.model import BODIES, SECTION, LoadCases
-from ..case.model import CORNERS, Case, Check, Device
-from ..margins.model import Margin, Margins
+from ..case.model import CORNERS, Case, Device
 from .wording import (
     ABSENT,
     MINUS,
-    band,
     figure,
     fixed,
     plain_name,
     point,
-    quantity,
     section_words,
 )
 
@@ -204,88 +201,6 @@ def free_bodies(cases: LoadCases, index: int) -> tuple[Table, ...]:
     return tuple(tables)
 
 
-def margin_table(margins: Iterable[Margin], title: str = "Margins") -> Table:
-    """Lowest margins with place, governing and second load case, band and trust."""
-    columns = (
-        "criterion",
-        "place",
-        "load case",
-        "applied",
-        "allowable",
-        "factor",
-        "margin",
-        "second-worst",
-        "trust",
-    )
-    rows = [
-        (
-            item.criterion,
-            f"{plain_name(item.place)} {point(item.at)}" if any(item.at) else plain_name(item.place),
-            plain_name(item.load_case),
-            quantity(item.applied, item.unit),
-            quantity(item.allowable, item.unit),
-            figure(item.factor),
-            band(item.band, item.margin),
-            "" if item.second is None else f"{plain_name(item.second[0])} {fixed(item.second[1], 2)}",
-            item.trust,
-        )
-        for item in margins
-    ]
-    note = "margin = allowable / (factor × applied) − 1; below zero fails. A band: both ends of what is not known."
-    return table(title, columns, rows, note)
-
-
-def cause_table(margins: Iterable[Margin]) -> Table:
-    """Which sources make each margin's applied value, largest share first."""
-    rows = []
-    for item in margins:
-        ordered = sorted(item.causes, key=lambda cause: -abs(cause.share))[:6]
-        shares = ", ".join(f"{plain_name(c.source)} {fixed(100 * c.share, 0, sign=True)} %" for c in ordered)
-        rows.append((f"{item.criterion}, {plain_name(item.place)}", plain_name(item.load_case), shares, item.method))
-    note = "Shares of the applied value by source; they sum to 100 %, and a negative share relieves."
-    return table("What causes each margin", ("margin", "load case", "causes", "method"), rows, note)
-
-
-def check_table(checks: Iterable[Check], title: str = "Checks") -> Table:
-    """Every check with its value against its limit."""
-    rows = [
-        (item.name, "passed" if item.ok else "FAILED", figure(item.value), figure(item.limit), item.note)
-        for item in checks
-    ]
-    return table(title, ("check", "outcome", "value", "limit", "note"), rows)
-
-
-def assumption_tables(case: Case, margins: Margins | None) -> tuple[Table, ...]:
-    """Bounded, defaulted and stated-basis inputs, and what was overridden on the command line."""
-    found = []
-    if case.bounds:
-        moves = {item.key: item for item in margins.movements} if margins is not None else {}
-        rows: list[Row] = []
-        for bound in case.bounds:
-            move = moves.get(bound.key)
-            ends = ABSENT if move is None else f"{fixed(move.margin_low, 2)} and {fixed(move.margin_high, 2)}"
-            rows.append((bound.key, bound.low, bound.middle, bound.high, ends, bound.reason))
-        columns = ("missing number", "low", "middle", "high", "lowest margin at the ends", "why these")
-        found.append(table("Bounded inputs", columns, rows, "Not in the case file: run at both ends."))
-    if case.defaults:
-        rows = [(item.key, item.value, item.source) for item in case.defaults]
-        found.append(table("Defaults used", ("key", "value", "source"), rows))
-    if case.known:
-        rows = [
-            (item.key, item.basis, "" if item.band is None else f"±{fixed(100 * item.band, 1)} %", item.source)
-            for item in case.known.values()
-        ]
-        found.append(table("How well inputs are known", ("key", "basis", "band", "source"), rows))
-    if case.overrides:
-        found.append(table("Set on the command line", ("key and value",), [(text,) for text in case.overrides]))
-    return tuple(found)
-
-
-def unsourced(case: Case) -> tuple[str, ...]:
-    """Keys whose default has no source."""
-    return tuple(item.key for item in case.defaults if "unsourced" in item.source.lower())
-
-
 def device_table(case: Case) -> Table:
     """Every aero device with the body that carries it."""
     rows = [(plain_name(item.name), item.on, point(item.at), *_areas(item)) for item in case.devices]
@@ -306,44 +221,3 @@ def _areas(device: Device) -> tuple[str, str]:
         values = -device.table.values[..., axis]
         spans.append(f"{fixed(values.min(), 3)} to {fixed(values.max(), 3)}")
     return spans[0], spans[1]
-
-
-# Ending of a key: unit shown and its size in SI.
-KEY_UNITS = {
-    "_Nm_per_rad": ("kN·m/rad", 1e3),
-    "_Nm": ("kN·m", 1e3),
-    "_N_per_m": ("kN/mm", 1e6),
-    "_N": ("kN", 1e3),
-    "_m3": ("cm³", 1e-6),
-    "_m4": ("cm⁴", 1e-8),
-    "_m2": ("cm²", 1e-4),
-    "_Pa": ("MPa", 1e6),
-    "_m": ("mm", 1e-3),
-    "_rad": ("mrad", 1e-3),
-}
-
-
-def amount(key: str, value: float | None) -> Row:
-    """Return name, figure and unit of a value whose key ends in its SI unit."""
-    for ending, (unit, scale) in KEY_UNITS.items():
-        if key.endswith(ending):
-            return plain_name(key.removesuffix(ending)), figure(value, scale=scale), unit
-    return plain_name(key), figure(value), ""
-
-
-def stiffness_table(margins: Margins) -> Table:
-    """Stiffness between the faces."""
-    rows = [amount(key, value) for key, value in margins.stiffness.items()]
-    return table("Stiffness of the block between its faces", ("mode", "value", "unit"), rows)
-
-
-def requirement_tables(margins: Margins) -> tuple[Table, ...]:
-    """The requirements sheet: what each face asks of a block that is not there yet."""
-    return tuple(
-        table(
-            f"Required of the block: {plain_name(place)}",
-            ("quantity", "at least", "unit"),
-            [amount(key, value) for key, value in values.items()],
-        )
-        for place, values in margins.requirements.items()
-    )

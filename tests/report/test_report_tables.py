@@ -10,7 +10,7 @@ from report.examples import example_case, example_cases, example_margins, margin
 from rich.console import Console
 
 from blockload.margins.model import Verdict
-from blockload.report import tables
+from blockload.report import judged_tables, tables
 from blockload.report.choice import governing_index, lowest, lowest_per_criterion
 from blockload.report.console import loads_tables, render, summary
 from blockload.report.wording import ABSENT, band, figure, fixed, quantity, section_words
@@ -80,7 +80,7 @@ def test_columns_of_numbers_are_recognised() -> None:
 
 
 def test_every_default_without_source_is_listed() -> None:
-    assert tables.unsourced(example_case()) == ("limits.separation_factor",)
+    assert judged_tables.unsourced(example_case()) == ("limits.separation_factor",)
 
 
 def test_lowest_margins_come_first_and_once_per_criterion() -> None:
@@ -141,7 +141,7 @@ def test_text_with_square_brackets_is_printed_as_it_stands() -> None:
 
 
 def test_shares_of_causes_are_written_largest_first() -> None:
-    made = tables.cause_table([margin()])
+    made = judged_tables.cause_table([margin()])
 
     assert made.rows[0][2] == "rear wing +70 %, weight and inertia +30 %"
 
