@@ -18,7 +18,8 @@ Built = Iterator[Manoeuvre | Omission]
 ROLL_TEST = frozen((-60e3, 50e3, -90e3))
 """Rearward, sideways and down at the top of the roll structure [N]."""
 ROLL_SOURCE = (
-    "FIA Formula One technical regulations 2017, roll-structure test: 60 kN rearward, 50 kN lateral, 90 kN down"
+    "FIA Formula One technical regulations 2017, roll-structure test: 60 kN rearward, 50 kN lateral, 90 kN down "
+    "(from notes on the text; the rules of the car's own class count)"
 )
 _STILL = frozen(np.zeros(3))
 _ALL = ("x", "y", "z", "roll", "pitch", "yaw")
