@@ -2,15 +2,17 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator, Sequence
 from itertools import pairwise
+from pathlib import Path
 from typing import Any
 
 from ..errors import nearest
 from ..units import show
 from .factors import CREST, DEFAULTS, FAST_CORNER, SLOW_CORNER, USED_BY
 from .groups import BRAKING, FACTORS, FORCES, TURNING, WORDS, spelled_out
-from .model import CatalogueSpec, EnvelopeSpec, Factor, GivenForce, Performance, Point
+from .model import CatalogueSpec, EnvelopeSpec, Factor, GivenForce, LapSpec, Performance, Point
 from .notes import Notes, key_of
 from .schema import CaseTable
 from .schema_situations import EnvelopeTable, JackTable, PerformanceTable, PointTable
@@ -136,6 +138,18 @@ def build_envelope(given: EnvelopeTable | None, notes: Notes) -> EnvelopeSpec | 
         )
     speeds = tuple(sorted(float(item) for item in given.speeds or ()))
     return EnvelopeSpec(speeds=speeds, headings=headings)
+
+
+def build_laps(table: CaseTable, folder: Path, notes: Notes) -> tuple[LapSpec, ...]:
+    """Return where the laps are; their files are read when their loads are asked for."""
+    for name in table.laps:
+        if not re.fullmatch(r"[A-Za-z0-9_-]+", name):
+            found = f"{name!r} cannot name the lap's files"
+            notes.problem(key_of("laps", name), found, "letters, digits, _ and -", "rename it")
+    return tuple(
+        LapSpec(name=name, file=folder / item.file, step=item.step, overall_ratio=item.overall_ratio)
+        for name, item in table.laps.items()
+    )
 
 
 def turns(table: CaseTable) -> bool:

@@ -31,6 +31,29 @@ class Head:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class Page:
+    """A CSV file cut into statements by key, the heads of the columns, and (line number, line) of each row."""
+
+    path: Path
+    statements: Mapping[str, str]
+    heads: tuple[Head, ...]
+    separator: str
+    body: tuple[tuple[int, str], ...]
+
+    def sheet(self, first: int = 0, last: int | None = None) -> Sheet:
+        """Return some of its rows (all of them by default) as cells; CaseError for one of the wrong length."""
+        body = self.body[first:last]
+        count, mark = len(self.heads), self.separator
+        return Sheet(
+            path=self.path,
+            statements=self.statements,
+            heads=self.heads,
+            cells=tuple(_row(_cells(line, mark), count, f"{self.path}, line {n}", mark) for n, line in body),
+            lines=tuple(number for number, _ in body),
+        )
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class Sheet:
     """A CSV file as text: statements by key, the heads of the columns, cells row by row, the line of each row."""
 
@@ -77,6 +100,11 @@ def read_sheet(path: Path, where: str) -> Sheet:
         With the line number.
 
     """
+    return read_page(path, where).sheet()
+
+
+def read_page(path: Path, where: str) -> Page:
+    """Read a CSV file as far as its column heads, the figures still as lines; raises as `read_sheet` does."""
     lines = _lines(path, where)
     statements: dict[str, str] = {}
     body: list[tuple[int, str]] = []
@@ -92,14 +120,7 @@ def read_sheet(path: Path, where: str) -> Sheet:
     first, head = body[0]
     separator = next((mark for mark in ";\t" if mark in head), ",")
     heads = _heads(_cells(head, separator), f"{path}, line {first}")
-    rows = [_row(_cells(line, separator), len(heads), f"{path}, line {n}", separator) for n, line in body[1:]]
-    return Sheet(
-        path=path,
-        statements=statements,
-        heads=heads,
-        cells=tuple(rows),
-        lines=tuple(number for number, _ in body[1:]),
-    )
+    return Page(path=path, statements=statements, heads=heads, separator=separator, body=tuple(body[1:]))
 
 
 def _lines(path: Path, where: str) -> list[tuple[int, str]]:
@@ -159,4 +180,4 @@ def _not_a_number(text: str, where: str) -> CaseError:
     comma = re.fullmatch(r"([+-]?\d+),(\d+)", text.replace("−", "-"))
     if comma:
         return CaseError(where, f"{text!r} has a decimal comma", allowed, f"write {comma[1]}.{comma[2]}")
-    return CaseError(where, f"{text!r} is no number", allowed, "a map cannot have a hole: measure it, or leave it out")
+    return CaseError(where, f"{text!r} is no number", allowed, "leave no hole: measure it, or leave the whole line out")

@@ -339,6 +339,39 @@ class EnvelopeSpec:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class LapSpec:
+    """A recorded or simulated lap: its file, the step [s] it is resampled at (None: as recorded), its overall ratio.
+
+    overall_ratio stands in where the file has no such column.
+    """
+
+    name: str
+    file: Path
+    step: float | None = None
+    overall_ratio: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class LapHistory:
+    """A lap's samples (N,) in SI and the car's axes: time, distance (one of them may be None), speed.
+
+    acceleration (N, 3) is that of the car's CG without gravity; channels holds what else is known, (N,) each by name:
+    yaw, steer, ride_front, ride_rear, overall_ratio, torque (at the clutch), crank_acceleration, and measured loads
+    such as "wheel.FL" (vertical, + up on the tyre), "pushrod.FL" and "damper.FL" (+ tension); state names that of the
+    aero maps.
+    """
+
+    name: str
+    path: Path
+    time: Floats | None
+    distance: Floats | None
+    speed: Floats
+    acceleration: Floats
+    channels: Mapping[str, Floats] = field(default_factory=dict)
+    state: tuple[str, ...] | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class MaterialChoice:
     """A volume (name or fnmatch pattern), the grade it is made of or its own properties, its temperature [K]."""
 
@@ -504,6 +537,7 @@ class Case:
     performance: Performance = field(default_factory=Performance)
     catalogue: CatalogueSpec | None = None
     envelope: EnvelopeSpec | None = None
+    laps: tuple[LapSpec, ...] = ()
 
     @property
     def wheelbase(self) -> float:

@@ -25,7 +25,7 @@ from .build_loads import (
     build_manoeuvres,
     build_tyres,
 )
-from .build_situations import build_catalogue, build_envelope, build_performance, build_points, turns
+from .build_situations import build_catalogue, build_envelope, build_laps, build_performance, build_points, turns
 from .documents import Document, Layer, layers, literal, merged, nested, override, split_key
 from .frame import Frame, read_frame, to_car
 from .messages import refusals, together
@@ -113,13 +113,14 @@ def _rebased(layer: Layer, folder: Path) -> Document:
         name = document.get(table, {}).get(key) if isinstance(document.get(table), Mapping) else None
         if isinstance(name, str):
             document[table] = {**document[table], key: str((own / name).resolve())}
-    if isinstance(document.get("aero"), Mapping):
-        document["aero"] = {
-            name: {**item, "map": str((own / item["map"]).resolve())}
-            if isinstance(item, Mapping) and isinstance(item.get("map"), str)
-            else item
-            for name, item in document["aero"].items()
-        }
+    for table, key in (("aero", "map"), ("laps", "file")):
+        if isinstance(document.get(table), Mapping):
+            document[table] = {
+                name: {**item, key: str((own / item[key]).resolve())}
+                if isinstance(item, Mapping) and isinstance(item.get(key), str)
+                else item
+                for name, item in document[table].items()
+            }
     return document
 
 
@@ -234,6 +235,7 @@ def _assembled(
         performance=build_performance(table.performance, notes),
         catalogue=build_catalogue(table, notes),
         envelope=build_envelope(table.envelope, notes),
+        laps=build_laps(table, folder, notes),
     )
     return _noted(case, notes)
 

@@ -8,11 +8,11 @@ from typing import Any, Literal
 from .schema_block import BlockTable, ConceptTable, FacesTable, InstallationTable, KnownTable, LimitsTable, PathTable
 from .schema_car import AxlesTable, BodiesTable, CarTable, ChassisTable, DriveTable, EngineTable, FrameTable, TyresTable
 from .schema_loads import AeroSplitTable, AeroTotalTable, DeviceTable, ManoeuvreTable
-from .schema_situations import CatalogueTable, EnvelopeTable, PerformanceTable, PointsTable
+from .schema_situations import CatalogueTable, EnvelopeTable, LapTable, PerformanceTable, PointsTable
 from .tables import Table, quantity, table, tables, words
 
 FORMAT = "blockload.case/1"
-LATER = ("laps", "gauges", "heat", "duty", "scatter", "measured", "accepted")
+LATER = ("gauges", "heat", "duty", "scatter", "measured", "accepted")
 """Tables kept as they stand in the file."""
 
 
@@ -63,7 +63,7 @@ class CaseTable(Table):
     performance: PerformanceTable | None = table("what the car can do")
     catalogue: CatalogueTable | None = table("groups of standard situations")
     envelope: EnvelopeTable | None = table("boundary of what grip and power allow, every vertex a load case")
-    laps: Any = words("recorded or simulated laps (kept for later use)")
+    laps: dict[str, LapTable] = tables("recorded or simulated laps by name: a load case per sample")
     gauges: Any = words("named places whose motion is reported (kept for later use)")
     heat: Any = words("temperatures (kept for later use)")
     duty: Any = words("duty cycle for life (kept for later use)")

@@ -1,4 +1,4 @@
-"""The case file's tables for standard situations: points of the car, performance, catalogue and envelope."""
+"""The case file's tables for standard situations: points of the car, performance, catalogue, envelope and laps."""
 
 from typing import Literal
 
@@ -143,4 +143,19 @@ class EnvelopeTable(Table):
         default="24",
         source="common practice, unsourced: 24 to 36",
         example="24",
+    )
+
+
+class LapTable(Table):
+    """[laps.NAME]: a recorded or simulated lap."""
+
+    file: str = words("CSV file with columns that carry their units", needed=True, frame="path", example='"lap.csv"')
+    step: float | None = quantity(
+        "time",
+        "even step to resample it at, averaged where that is coarser; as recorded when absent",
+        example='"20 ms"',
+        band=("0.1 ms", "10 s"),
+    )
+    overall_ratio: float | None = quantity(
+        "ratio", "crank speed over wheel speed, where the file has no such column", example="5.2", band=("0.5", "60")
     )

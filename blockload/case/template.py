@@ -44,6 +44,7 @@ _NAMES = {
     "points.trolley": "front",
     "catalogue.factors": "kerb",
     "catalogue.forces": "landing",
+    "laps": "test_day",
 }
 
 _NAMED = {
