@@ -75,3 +75,20 @@ def free_body(points: Floats, mass: Any) -> FreeBody:
         cg=cg,
         inertia=inertia,
     )
+
+
+def hold(matrix: Any, held: Ints) -> Any:
+    """The matrix with rows and columns of the held unknowns emptied, their diagonal kept; symmetric still."""
+    result = matrix.copy()
+    for node, component in zip(*np.divmod(held, 3), strict=True):
+        own = slice(matrix.indptr[node], matrix.indptr[node + 1])
+        neighbours = matrix.indices[own]
+        stiff = result.data[own][neighbours == node][0, component, component]
+        result.data[own, component, :] = 0.0
+        for other in neighbours:
+            start, stop = matrix.indptr[other], matrix.indptr[other + 1]
+            place = start + np.searchsorted(matrix.indices[start:stop], node)
+            result.data[place, :, component] = 0.0
+        place = own.start + np.searchsorted(neighbours, node)
+        result.data[place, component, component] = stiff
+    return result

@@ -8,28 +8,24 @@ Flexibility is d = Pᵀu; stress at the surface follows from one sparse operator
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from pathlib import Path
-from typing import Any
 
 import numpy as np
 
 from ..arrays import Floats, Ints, frozen
 from ..block.model import Block
+from .columns import BLOCK_OF_COLUMNS, Progress, Solved, solve_columns
 from .elements import Elements, elements_of
-from .energy import relative_gap, strain_energy
-from .factor import choose, factorise, residual
+from .energy import relative_gap
+from .factor import choose, factorise
+from .loads import UnitLoads, unit_loads
 from .model import Library
 from .recovery import Surface, gradient_operator, surface_of, surface_stress
-from .relief import FreeBody, free_body
-from .spreading import unit_wrenches
-from .stiffness import heat_loads, mass, stiffness
+from .relief import FreeBody, free_body, hold
+from .stiffness import mass, stiffness
 from .store import cache_folder, fingerprint, load, save
 from .threads import one_thread
-
-Progress = Callable[[str, float], None]
-BLOCK_OF_COLUMNS = 24
 
 
 def respond(
@@ -61,42 +57,6 @@ def respond(
     return library
 
 
-@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class UnitLoads:
-    """Spread wrenches P (3N, 6A) as a sparse matrix, heat loads (3N, V), and how well the spreads re-integrate."""
-
-    wrenches: Any
-    heat: Floats
-    spread: float
-
-    def columns(self, part: slice) -> Floats:
-        """Unit loads `part` as dense columns (3N, k)."""
-        split = self.wrenches.shape[1]
-        indices = np.arange(split + self.heat.shape[1])[part]
-        left = self.wrenches[:, indices[indices < split]].toarray()
-        return np.hstack([left, self.heat[:, indices[indices >= split] - split]])
-
-
-def unit_loads(block: Block, elements: Elements) -> UnitLoads:
-    """Spread every attachment's unit wrenches and the heat of every volume."""
-    from scipy import sparse
-
-    rows, columns, values, gap = [], [], [], 0.0
-    for index, attachment in enumerate(block.attachments):
-        loads, nodes, again = unit_wrenches(block, attachment)
-        rows.append(np.repeat((3 * nodes[:, None] + np.arange(3)).ravel(), 6))
-        columns.append(np.tile(6 * index + np.arange(6), 3 * len(nodes)))
-        values.append(loads.ravel())
-        radius = np.sqrt(attachment.area)
-        scale = np.array([1.0] * 3 + [radius] * 3)
-        gap = max(gap, float(np.abs((again - np.eye(6)) / scale[:, None] * scale).max()))
-    shape = (3 * len(elements.points), 6 * len(block.attachments))
-    if not rows:
-        return UnitLoads(wrenches=sparse.csc_array(shape), heat=heat_loads(elements, len(block.volumes)), spread=0.0)
-    wrenches = sparse.coo_array((np.concatenate(values), (np.concatenate(rows), np.concatenate(columns))), shape=shape)
-    return UnitLoads(wrenches=wrenches.tocsc(), heat=heat_loads(elements, len(block.volumes)), spread=gap)
-
-
 def solve(
     block: Block, *, solver: str = "fronts", report: Progress = lambda stage, share: None, held: Ints | None = None
 ) -> Library:
@@ -113,65 +73,12 @@ def _solve(block: Block, solver: str, report: Progress, held: Ints | None) -> Li
     loads = unit_loads(block, elements)
     held = body.held() if held is None else held
     report("factoring the stiffness", 0.05)
-    solver_of = factorise(hold(matrix, held), solver, elements.points)
-    motion, checks = _columns(matrix, solver_of, body, loads, held, report)
-    del solver_of
+    solved = solve_columns(matrix, factorise(hold(matrix, held), solver, elements.points), body, loads, held, report)
+    del matrix
     report("recovering stress", 0.85)
     surface = surface_of(block)
-    stress = _stress(elements, surface, block, motion, loads.wrenches.shape[1])
-    return _library(block, solver, body, loads, matrix, motion, stress, surface, checks)
-
-
-def hold(matrix: Any, held: Ints) -> Any:
-    """The matrix with rows and columns of the held unknowns emptied, their diagonal kept; symmetric still."""
-    result = matrix.copy()
-    for node, component in zip(*np.divmod(held, 3), strict=True):
-        own = slice(matrix.indptr[node], matrix.indptr[node + 1])
-        neighbours = matrix.indices[own]
-        stiff = result.data[own][neighbours == node][0, component, component]
-        result.data[own, component, :] = 0.0
-        for other in neighbours:
-            start, stop = matrix.indptr[other], matrix.indptr[other + 1]
-            place = start + np.searchsorted(matrix.indices[start:stop], node)
-            result.data[place, :, component] = 0.0
-        place = own.start + np.searchsorted(neighbours, node)
-        result.data[place, component, component] = stiff
-    return result
-
-
-def _columns(
-    matrix: Any,
-    solver_of: Callable[[Floats], Floats],
-    body: FreeBody,
-    loads: UnitLoads,
-    held: Ints,
-    report: Progress,
-) -> tuple[Floats, dict[str, float]]:
-    """Motion (3N, U) of all unit loads, and the largest residual, reaction and imbalance met."""
-    total = loads.wrenches.shape[1] + loads.heat.shape[1]
-    motion = np.empty((matrix.shape[0], total))
-    checks = {"residual": 0.0, "reaction": 0.0, "relief": 0.0}
-    for start in range(0, total, BLOCK_OF_COLUMNS):
-        part = slice(start, min(start + BLOCK_OF_COLUMNS, total))
-        raw = loads.columns(part)
-        columns = body.balance(raw)
-        size = np.linalg.norm(columns, axis=0)
-        size[size == 0] = 1.0
-        scale = np.outer(np.linalg.norm(body.modes, axis=0), size)
-        grounded = columns.copy()
-        grounded[held] = 0.0
-        found = solver_of(grounded)
-        gap = matrix @ found - columns
-        motion[:, part] = body.strip(found)
-        _raise(checks, "residual", residual(matrix, motion[:, part], columns))
-        _raise(checks, "reaction", np.abs(gap[held]) / size)
-        _raise(checks, "relief", np.abs(body.modes.T @ columns) / scale)
-        report("solving unit loads", 0.5 + 0.35 * part.stop / total)
-    return motion, checks
-
-
-def _raise(checks: dict[str, float], name: str, value: Any) -> None:
-    checks[name] = max(checks[name], float(np.max(value)))
+    stress = _stress(elements, surface, block, solved.motion, loads.units)
+    return _library(block, solver, body, loads, solved, stress, surface)
 
 
 def _stress(elements: Elements, surface: Surface, block: Block, motion: Floats, wrenches: int) -> Floats:
@@ -198,20 +105,17 @@ def _library(
     solver: str,
     body: FreeBody,
     loads: UnitLoads,
-    matrix: Any,
-    motion: Floats,
+    solved: Solved,
     stress: Floats,
     surface: Surface,
-    checks: dict[str, float],
 ) -> Library:
-    units = loads.wrenches.shape[1]
+    units, motion, energy = loads.units, solved.motion, solved.energy
     averaged = loads.wrenches.T @ motion
     raw, thermal = averaged[:, :units], averaged[:, units:]
-    energy = strain_energy(matrix, motion)
     scale = np.sqrt(np.outer(np.diag(raw), np.diag(raw)))
     mutual = np.sqrt(np.outer(np.diag(raw), np.maximum(2 * energy[units:], np.finfo(float).tiny)))
     flexibility = (raw + raw.T) / 2
-    checks |= {
+    checks = dict(solved.checks) | {
         "spread": loads.spread,
         "symmetry": float(np.max(np.abs(raw - raw.T) / scale, initial=0.0)),
         "heat reciprocity": float(np.max(np.abs(motion[:, :units].T @ loads.heat - thermal) / mutual, initial=0.0)),

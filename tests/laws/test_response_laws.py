@@ -13,9 +13,10 @@ from blockload.block.model import Block
 from blockload.response.elements import elements_of
 from blockload.response.energy import ENERGY_LIMIT, energy_gap
 from blockload.response.fields import element_stress, field
+from blockload.response.loads import unit_loads
 from blockload.response.model import Library
 from blockload.response.relief import free_body, rigid_modes
-from blockload.response.respond import solve, unit_loads
+from blockload.response.respond import solve
 from blockload.response.stiffness import mass, stiffness
 
 sys.path.append(str(Path(__file__).parents[1] / "response"))
