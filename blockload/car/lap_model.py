@@ -147,6 +147,7 @@ def flags(lap: LapLoads) -> tuple[Flag, ...]:
     """What to distrust: samples out of balance, without a steady state, beyond grip, on three wheels, beyond a map."""
     used = np.nan_to_num(lap.axle_use, posinf=np.inf)
     lowest = lap.wheel_force[..., 2].min(axis=1)
+    lifted, off = lap.lifted.sum(axis=1, dtype=float), np.asarray(lap.lifted.sum(axis=1) > 0)
     unbalanced: NDArray[np.bool_] = np.where(lap.gap <= LIMIT, False, True)  # nan does not balance
     found = [
         _flag("the forces do not balance: share left over", unbalanced, lap.gap),
@@ -155,7 +156,7 @@ def flags(lap: LapLoads) -> tuple[Flag, ...]:
             _flag(f"the {name} axle is asked more than its tyres hold: times its grip", used[:, k] > _HELD, used[:, k])
             for k, name in enumerate(AXLES)
         ),
-        _flag("one wheel off the ground: wheels lifted", lap.lifted.any(axis=1), lap.lifted.sum(axis=1, dtype=float)),
+        _flag("one wheel off the ground: wheels lifted", off, lifted),
         _flag("an aero map is read at its edge: speed, m/s", lap.outside, lap.speed),
     ]
     return tuple(item for item in found if item is not None)

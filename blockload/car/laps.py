@@ -41,7 +41,7 @@ from .suspension import body_wrenches, corner_wrenches, link_loads
 from .tyres import tyre_use
 from .wheels import TyreForces, tyre_answer
 
-CHUNK = 8192
+CHUNK = 4096
 _MEMBERS = {"pushrod": "pushrod", "damper": "spring"}
 _DOWN = (0.0, 0.0, -1.0)
 
