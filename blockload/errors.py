@@ -23,6 +23,7 @@ class BlockloadError(Exception):
         What would have been accepted.
     remedy : str
         What the user can do about it.
+
     """
 
     def __init__(self, where: str, found: str, allowed: str = "", remedy: str = "") -> None:
