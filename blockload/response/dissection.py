@@ -4,8 +4,9 @@ A set of nodes is cut in two by a plane; the nodes on one side with a link acros
 eliminated after both (George, Nested Dissection of a Regular Finite Element Mesh, SIAM J. Numer. Anal. 10 (1973)).
 How many nodes a plane at t separates is known for every t at once: those with place ≤ t less those whose farthest
 neighbour is ≤ t. Several directions are swept this way and the thinnest section near the middle is taken, so a block
-is cut between its bulkheads. For large sets the separator is then thinned to a minimum vertex cover of the links
-across, by König's theorem from a maximum matching.
+is cut between its bulkheads; sets of fewer than FEW nodes are swept along their own principal axes only. The
+separator of larger sets is then thinned to a minimum vertex cover of the links across, by König's theorem from a
+maximum matching.
 """
 
 from __future__ import annotations
@@ -20,6 +21,7 @@ from .elements import Bools
 
 LEAF = 64
 COVER_FROM = 100
+FEW = 300
 SHARES = np.linspace(0.3, 0.7, 41)
 _DIRECTIONS = np.array(
     [[1, 0, 0], [0, 1, 0], [0, 0, 1], [0, 1, 1], [0, 1, -1], [1, 0, 1], [1, 0, -1], [1, 1, 0], [1, -1, 0]], dtype=float
@@ -85,7 +87,7 @@ def _cut(links: _Links, points: Floats) -> Ints | None:
     """Side of every node: 0, 1, or 2 for the separator; None where no plane cuts the set."""
     principal = np.linalg.eigh(np.cov(points.T))[1].T
     best, cost = None, np.inf
-    for direction in np.vstack([_DIRECTIONS, principal]):
+    for direction in principal if len(points) < FEW else np.vstack([_DIRECTIONS, principal]):
         along = points @ direction
         if np.ptp(along) <= 1e-12 * np.abs(along).max():
             continue

@@ -2,7 +2,8 @@
 
 A key is the hash of everything the library depends on: points, cells, the facets of each attachment, materials, the
 solver and the source text of this room. An entry is written beside and renamed; whoever loses the race to rename has
-lost nothing, since the winner wrote the same. Arrays are memory-mapped on reading.
+lost nothing, since the winner wrote the same. Large arrays are memory-mapped on reading, except where an open map
+would keep others from deleting the file.
 """
 
 from __future__ import annotations
@@ -11,6 +12,7 @@ import hashlib
 import json
 import os
 import shutil
+import time
 import uuid
 from dataclasses import dataclass
 from pathlib import Path
@@ -23,7 +25,8 @@ from ..block.model import Block
 from .model import Library
 
 FORMAT = "blockload.library/1"
-MAPPED = ("motion", "stress")
+MAPPED = ("motion", "stress") if os.name != "nt" else ()
+STALE = 3600.0
 ARRAYS = (
     "centroids",
     "cg",
@@ -153,8 +156,18 @@ def load(folder: Path, key: str) -> Library | None:
             **arrays,
         )
     except (OSError, ValueError, KeyError, TypeError):
-        shutil.rmtree(target, ignore_errors=True)
+        _remove(target)
         return None
+
+
+def _remove(entry: Path) -> None:
+    """Take an entry out of sight in one step, then delete it, so that nobody meets half of one."""
+    aside = entry.with_name(f".{uuid.uuid4().hex}")
+    try:
+        entry.replace(aside)
+    except OSError:
+        aside = entry
+    shutil.rmtree(aside, ignore_errors=True)
 
 
 def _inspect(target: Path, manifest: dict[str, Any], key: str) -> None:
@@ -195,8 +208,12 @@ def list_entries(folder: Path | None = None) -> tuple[Entry, ...]:
 
 
 def drop(key: str, folder: Path | None = None) -> tuple[Entry, ...]:
-    """Delete the entries whose key starts with `key`, or "all"; return those deleted."""
+    """Delete the entries whose key starts with `key`, or "all" and what killed runs left; return those deleted."""
     chosen = tuple(entry for entry in list_entries(folder) if key == "all" or (key and entry.key.startswith(key)))
     for entry in chosen:
-        shutil.rmtree(entry.path, ignore_errors=True)
+        _remove(entry.path)
+    if key == "all":
+        for left in cache_folder(folder).glob(".*"):
+            if left.is_dir() and time.time() - left.stat().st_mtime > STALE:
+                shutil.rmtree(left, ignore_errors=True)
     return tuple(entry for entry in chosen if not entry.path.exists())
