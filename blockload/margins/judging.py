@@ -165,7 +165,7 @@ def _failure(item: Margin) -> str:
 
 
 def _named(item: Margin) -> str:
-    return f"{item.criterion} at {item.place}, {item.load_case}"
+    return f"{item.criterion} at {item.place}, {item.load_case.replace('_', ' ')}"
 
 
 def _lowest_first(item: Margin) -> float:

@@ -87,6 +87,8 @@ def summary(case: Case, cases: LoadCases, margins: Margins) -> list[RenderableTy
     if len(verdict.reasons) > 3:
         parts.append(Text(f"  and {len(verdict.reasons) - 3} more reasons in the report"))
     parts += [_faces(cases, _governing_cases(cases, margins)), _margins(margins)]
+    if required := judged_tables.requirement_summary(margins):
+        parts.append(_grid(required))
     parts += _checks(case, margins)
     parts.append(_clipped("not judged: ", verdict.not_judged, 3))
     parts.append(Text(ONE_LINE, style="dim"))

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 
 from ..case.model import Case, Check
 from ..margins.model import Margin, Margins
 from .tables import Row, Table, table
 from .wording import ABSENT, band, figure, fixed, plain_name, point, quantity
+
+PRELOAD = "_preload_against_"
 
 
 def margin_table(margins: Iterable[Margin], title: str = "Margins") -> Table:
@@ -123,11 +125,43 @@ def stiffness_table(margins: Margins) -> Table:
 
 def requirement_tables(margins: Margins) -> tuple[Table, ...]:
     """The requirements sheet: what each face asks of a block that is not there yet."""
-    return tuple(
-        table(
-            f"Required of the block: {plain_name(place)}",
-            ("quantity", "at least", "unit"),
-            [amount(key, value) for key, value in values.items()],
+    return tuple(_requirement(place, values) for place, values in margins.requirements.items())
+
+
+def _requirement(place: str, values: Mapping[str, float]) -> Table:
+    title = f"Required of the block: {plain_name(place)}"
+    studs = list(dict.fromkeys(key.partition(PRELOAD)[0] for key in values if PRELOAD in key))
+    if not studs:
+        return table(title, ("quantity", "at least", "unit"), [amount(key, value) for key, value in values.items()])
+    against = ("slip_rigid_face", "slip_worst_split", "separation_rigid_face", "separation_worst_split")
+    rows = [(name, *(fixed(values[f"{name}{PRELOAD}{kind}_N"], 1, scale=1e3) for kind in against)) for name in studs]
+    note = "Preload needed, kN: on a rigid face, and where one row of studs carries the axial or the shear alone."
+    return table(title, ("stud", *(plain_name(kind) for kind in against)), rows, note)
+
+
+def requirement_summary(margins: Margins) -> Table | None:
+    """The requirements sheet in a few lines: section moduli and the largest preload of each face, and the twist."""
+    faces = {place: values for place, values in margins.requirements.items() if place.endswith(" face")}
+    if not faces:
+        return None
+    rows = [
+        (plain_name(key.removesuffix("_m3")), *(fixed(values[key], 1, scale=1e-6) for values in faces.values()), "cm³")
+        for key in next(iter(faces.values()))
+        if key.endswith("_m3")
+    ]
+    for kind in ("slip_rigid_face", "separation_rigid_face"):
+        most = [
+            max(
+                value
+                for key, value in margins.requirements[f"{place.removesuffix(' face')} studs"].items()
+                if kind in key
+            )
+            for place in faces
+        ]
+        rows.append(
+            (f"largest preload against {plain_name(kind)}", *(fixed(value, 1, scale=1e3) for value in most), "kN")
         )
-        for place, values in margins.requirements.items()
-    )
+    for key, value in margins.requirements.get("between the faces", {}).items():
+        name, number, unit = amount(key, value)
+        rows.append((name, number, *[""] * (len(faces) - 1), unit))
+    return table("Required of the block (at least)", ("quantity", *faces, "unit"), rows)
