@@ -21,8 +21,9 @@ from .case.reading import read, replaced
 
 if TYPE_CHECKING:
     from .block.model import Block
+    from .car.lap_model import LapLoads
     from .car.model import LoadCases
-    from .case.model import Bound, Case
+    from .case.model import Bound, Case, LapHistory
     from .installation.model import PadLoads
     from .margins.model import Margins, Movement
     from .response.model import Library
@@ -46,7 +47,7 @@ PACKAGES = (
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Run:
-    """Everything one check produced; block, library and pads are None at level `faces`."""
+    """Everything one check produced; block, library and pads are None at level `faces`, laps empty without any."""
 
     run_id: str
     case: Case
@@ -55,12 +56,39 @@ class Run:
     library: Library | None
     pads: PadLoads | None
     margins: Margins
+    laps: tuple[LapLoads, ...] = ()
 
 
 def loads(path: Path, overrides: Sequence[str] = (), *, judged_only: bool = False) -> tuple[Case, LoadCases]:
     """Read a case file and balance its load cases, or those alone that take part in a verdict."""
     case = read(path, overrides)
     return case, balance(case, judged_only=judged_only)
+
+
+def laps(case: Case, histories: Sequence[LapHistory] | None = None) -> tuple[LapLoads, ...]:
+    """Balance every sample of every lap of a case; `histories` as read, None to read them here.
+
+    Raises CaseError for a lap that cannot be used.
+    """
+    if not case.laps:
+        return ()
+    from .car.laps import lap_loads
+    from .car.resampling import resampled
+
+    found = []
+    for spec, recorded in zip(case.laps, recordings(case) if histories is None else histories, strict=True):
+        history, lost = resampled(recorded, spec.step)
+        found.append(lap_loads(case, history, overall_ratio=spec.overall_ratio, lost=lost))
+    return tuple(found)
+
+
+def recordings(case: Case) -> tuple[LapHistory, ...]:
+    """Read the files of a case's laps; raises CaseError for one that cannot be used."""
+    if not case.laps:
+        return ()
+    from .case.lap_csv import read_lap
+
+    return tuple(read_lap(spec) for spec in case.laps)
 
 
 def check(
@@ -93,6 +121,7 @@ def check(
     tell = progress or (lambda _step, _share: None)
     tell("loads", 0.0)
     case, cases = loads(path, overrides, judged_only=True)
+    histories = recordings(case)  # a lap that cannot be read is refused before the block is solved
     block, library = _respond(case, solver=solver, cache=cache, progress=tell)
     if case.chassis_without_block and library is not None:
         case = _with_block_twist(case, block, library)
@@ -110,6 +139,7 @@ def check(
         library=library,
         pads=pads,
         margins=margins,
+        laps=laps(case, histories),
     )
 
 

@@ -229,6 +229,11 @@ def _face(cases: LoadCases, name: str, index: int) -> dict[str, Any]:
         "force": wrench[:3],
         "moment": wrench[3:],
         "section": dict(zip(SECTION, cases.section(name)[index], strict=True)),
+        "sources": {
+            source: wrench
+            for source, wrench in zip(cases.sources, face.wrench[index], strict=True)
+            if np.abs(wrench).max() > 0.0
+        },
         "studs": {
             stud: {"axial": axial[k], "shear": math.hypot(*shear[k]), "shear_yz": shear[k], "at": face.stud_at[k]}
             for k, stud in enumerate(face.studs)

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Protocol
 
 if TYPE_CHECKING:
     from ..block.model import Block
+    from ..car.lap_model import LapLoads
     from ..car.model import LoadCases
     from ..case.model import Case
     from ..installation.model import PadLoads
@@ -49,4 +50,9 @@ class RunLike(Protocol):
     @property
     def margins(self) -> Margins:
         """Everything judged."""
+        ...
+
+    @property
+    def laps(self) -> tuple[LapLoads, ...]:
+        """The laps of the case, sample by sample."""
         ...

@@ -197,6 +197,7 @@ class ExampleRun:
     library: None = None
     pads: None = None
     margins: Margins = field(default_factory=example_margins)
+    laps: tuple = ()
 
 
 def example_surface() -> Surface:
