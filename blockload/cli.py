@@ -85,22 +85,38 @@ def loads(
     report: Annotated[
         Path | None, typer.Option("--report", metavar="FILE", help="Also write a page with the echo picture.")
     ] = None,
+    sheets: Annotated[
+        Path | None,
+        typer.Option("--sheets", metavar="DIR", help="Also write hand-over sheets (CSV) for the neighbours, and laps."),
+    ] = None,
+    show: Annotated[
+        str | None, typer.Option("--show", metavar="NAME", help="Also print one load case's free bodies and sections.")
+    ] = None,
 ) -> None:
     """Print the balanced load cases: wheels, faces, studs. Needs no block, answers at once."""
     from . import pipeline
     from .report.console import loads_tables
 
     read_case, cases = pipeline.loads(case, set_ or ())
+    laps = pipeline.laps(read_case)
+    tables = loads_tables(read_case, cases, laps, shown=show)
     if json is not None:
+        from .report.lap_files import laps_written
         from .report.results import load_results, write_json
 
-        write_json(json, load_results(read_case, cases))
+        write_json(json, load_results(read_case, cases) | laps_written(laps))
     if report is not None:
         from .report.page import loads_page
         from .report.writing import write_text
 
-        write_text(report, loads_page(read_case, cases))
-    _show(*loads_tables(read_case, cases))
+        write_text(report, loads_page(read_case, cases, laps))
+    if sheets is not None:
+        from .report.writing import probe_output, write_handover, write_laps
+
+        probe_output(sheets)
+        write_handover(sheets, read_case, cases, laps)
+        write_laps(sheets / "laps", laps)
+    _show(*tables)
 
 
 @app.command()

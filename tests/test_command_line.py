@@ -56,7 +56,7 @@ def test_check_at_level_faces_writes_a_run_that_verifies(tmp_path: Path) -> None
     verified = blockload("verify", run)
 
     assert done.returncode == 1
-    assert {item.name for item in run.iterdir()} == {"results.json", "report.html", "inputs"}
+    assert {item.name for item in run.iterdir()} == {"results.json", "report.html", "inputs", "sheets"}
     assert verified.returncode == 0, verified.stdout
 
 

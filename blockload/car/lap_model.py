@@ -150,14 +150,14 @@ def flags(lap: LapLoads) -> tuple[Flag, ...]:
     lifted, off = lap.lifted.sum(axis=1, dtype=float), np.asarray(lap.lifted.sum(axis=1) > 0)
     unbalanced: NDArray[np.bool_] = np.where(lap.gap <= LIMIT, False, True)  # nan does not balance
     found = [
-        _flag("the forces do not balance: share left over", unbalanced, lap.gap),
-        _flag("a wheel would have to pull: lowest wheel load, N", lap.pulled, -lowest, -1.0),
+        _flag("the forces do not balance, share left", unbalanced, lap.gap),
+        _flag("a wheel would have to pull, lowest load N", lap.pulled, -lowest, -1.0),
         *(
-            _flag(f"the {name} axle is asked more than its tyres hold: times its grip", used[:, k] > _HELD, used[:, k])
+            _flag(f"{name} axle beyond its tyres' grip, times", used[:, k] > _HELD, used[:, k])
             for k, name in enumerate(AXLES)
         ),
-        _flag("one wheel off the ground: wheels lifted", off, lifted),
-        _flag("an aero map is read at its edge: speed, m/s", lap.outside, lap.speed),
+        _flag("one wheel off the ground, wheels", off, lifted),
+        _flag("an aero map read at its edge, speed m/s", lap.outside, lap.speed),
     ]
     return tuple(item for item in found if item is not None)
 

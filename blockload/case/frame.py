@@ -22,6 +22,7 @@ from .points import points_bytes, read_points
 from .schema_car import FrameTable
 from .tables import Meta, Table, fields, inner
 
+CAR_AXES = "x forward, y left, z up"
 _DIRECTIONS = {
     "forward": (1, 0, 0),
     "rearward": (-1, 0, 0),
@@ -66,8 +67,7 @@ def read_frame(document: Mapping[str, Any], path: Path) -> Frame | None:
             raise CaseError(
                 f"{path}, frame.{key}", f"frame.{key} is not a key", allowed, nearest(key, FrameTable.model_fields)
             )
-    rotation = rotation_of(table.get("axes", "x forward, y left, z up"), f"{path}, frame.axes")
-    origin = parse(table.get("origin", [0.0, 0.0, 0.0]), "length_vector", f"{path}, frame.origin")
+    rotation, origin = axes_and_origin(table, path)
     points: Mapping[str, Floats] = {}
     content, source = b"", path
     name = table.get("points")
@@ -78,7 +78,14 @@ def read_frame(document: Mapping[str, Any], path: Path) -> Frame | None:
         content = points_bytes(source, f"{path}, frame.points")
         raw = read_points(content, source)
         points = {key: frozen(rotation @ value + origin) for key, value in raw.items()}
-    return Frame(rotation=rotation, origin=frozen(origin), points=points, path=path, source=source, content=content)
+    return Frame(rotation=rotation, origin=origin, points=points, path=path, source=source, content=content)
+
+
+def axes_and_origin(table: Mapping[str, Any], path: Path) -> tuple[Floats, Floats]:
+    """Return rotation (3, 3) and origin (3,) of a [frame] table in the car; raises as `read_frame` does."""
+    rotation = rotation_of(table.get("axes", CAR_AXES), f"{path}, frame.axes")
+    origin = parse(table.get("origin", [0.0, 0.0, 0.0]), "length_vector", f"{path}, frame.origin")
+    return rotation, frozen(origin)
 
 
 def rotation_of(axes: Any, where: str) -> Floats:
@@ -186,6 +193,10 @@ def _turned(read: Floats, what: str, frame: Frame) -> Any:
         return float(rotation[1].sum() * read[0] + origin[1])
     if what == "yz":
         return [float(item) for item in (rotation @ [0.0, *read] + origin)[1:]]
+    if what == "pair":
+        return (np.abs(rotation[1:, 1:]) @ read).tolist()
+    if what == "product":
+        return float(rotation[1:, 1:].sum(axis=1).prod() * read[0])
     if what == "moments":
         return (np.abs(rotation) @ read).tolist()
     turned = rotation @ read

@@ -13,6 +13,7 @@ from rich.console import RenderableType
 from rich.table import Table as RichTable
 from rich.text import Text
 
+from ..car.lap_model import LapLoads
 from ..car.model import SECTION, LoadCases
 from ..case.model import Case
 from ..margins.model import Margin, Margins
@@ -21,6 +22,8 @@ from .aero_tables import load_case_tables, remark_tables
 from .catalogue_tables import catalogue_tables
 from .cautions import ONE_LINE
 from .choice import governing_index, lowest, lowest_per_criterion
+from .lap_tables import lap_tables
+from .single_tables import envelope_tables, one_case
 from .suspension_tables import suspension_tables
 from .wording import band, figure, fixed, plain_name, quantity
 
@@ -55,8 +58,13 @@ def render(items: Iterable[TableLike]) -> list[RenderableType]:
     return parts
 
 
-def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
-    """Return the load cases of a case file as tables: summary, wheels, sections, studs."""
+def loads_tables(
+    case: Case, cases: LoadCases, laps: Sequence[LapLoads] = (), *, shown: str | None = None
+) -> list[RenderableType]:
+    """Return the load cases of a case file as tables: summary, wheels, sections, studs, laps.
+
+    `shown` names a load case whose free bodies and sections along the car are shown too; CaseError if unknown.
+    """
     chosen = (
         tables.load_case_summary(cases),
         tables.wheel_loads(cases),
@@ -66,6 +74,9 @@ def loads_tables(case: Case, cases: LoadCases) -> list[RenderableType]:
         *remark_tables(case),
         *suspension_tables(case, cases),
         *catalogue_tables(case, cases),
+        *envelope_tables(case),
+        *lap_tables(laps),
+        *(one_case(cases, shown) if shown is not None else ()),
     )
     failed = [item for item in case.checks if not item.ok]
     extra = [judged_tables.check_table(failed, "Checks of the case file that failed")] if failed else []

@@ -23,7 +23,7 @@ from ..arrays import Floats, frozen
 from ..car.lap_model import LapLoads
 from ..car.model import LoadCases, Term
 from ..car.terms import CRANK_LABELS, FACE_LABELS
-from ..case.frame import read_frame
+from ..case.frame import CAR_AXES, axes_and_origin
 from ..case.model import CARRIERS, Case
 from .files import write_beside
 
@@ -31,7 +31,6 @@ if TYPE_CHECKING:
     from ..installation.model import PadLoads
     from ..response.model import Library
 
-CAR_AXES = "x forward, y left, z up"
 _HEADS = ("F_x [N]", "F_y [N]", "F_z [N]", "M_x [N*m]", "M_y [N*m]", "M_z [N*m]")
 _ROUNDING = 1e-12  # of the largest load of a place
 _FACES_OF = {"tub": ("front",), "engine": ("front", "rear"), "gearbox": ("rear",)}
@@ -79,6 +78,7 @@ def write_sheets(
     *,
     laps: Sequence[LapLoads] = (),
     installed: Installed | None = None,
+    run_id: str = "loads",
 ) -> tuple[Path, ...]:
     """Write the hand-over sheets of tub, engine and gearbox.
 
@@ -92,6 +92,8 @@ def write_sheets(
         Their least and greatest at studs and faces follow those of the load cases.
     installed : Installed, optional
         Pad wrenches of a block, where there is one.
+    run_id : str
+        Stands at the head of every sheet.
 
     Returns
     -------
@@ -109,7 +111,7 @@ def write_sheets(
         places = tuple(handed_over(cases, body, laps=laps, installed=installed))
         for axes in axes_of(case):
             path = folder / f"force-on-the-{body}{axes.ending}.csv"
-            write_beside(path, sheet(case, body, places, axes).encode())
+            write_beside(path, sheet(case, body, places, axes, run_id=run_id).encode())
             written.append(path)
     return tuple(written)
 
@@ -205,20 +207,23 @@ def _kind(label: str) -> str:
 
 
 def axes_of(case: Case) -> tuple[Axes, ...]:
-    """Return the car's axes, and the case file's own where it states them."""
+    """Return the car's axes, and the case file's own where it states others."""
     car = Axes(words=CAR_AXES, rotation=frozen(np.eye(3)), origin=frozen(np.zeros(3)))
-    frame = read_frame(case.document, case.path)
-    if frame is None:
+    table = case.document.get("frame")
+    if not isinstance(table, Mapping):
         return (car,)
-    words = case.document["frame"].get("axes", CAR_AXES)
-    return (car, Axes(words=words, rotation=frame.rotation, origin=frame.origin, ending="-in-file-axes"))
+    rotation, origin = axes_and_origin(table, case.path)
+    if np.array_equal(rotation, car.rotation) and not origin.any():
+        return (car,)
+    words = table.get("axes", CAR_AXES)
+    return (car, Axes(words=words, rotation=rotation, origin=origin, ending="-in-file-axes"))
 
 
-def sheet(case: Case, body: str, places: Sequence[HandOver], axes: Axes) -> str:
+def sheet(case: Case, body: str, places: Sequence[HandOver], axes: Axes, *, run_id: str = "loads") -> str:
     """Return one sheet as CSV text: a row per place and load case, then the envelope of each place."""
     text = io.StringIO()
     writer = csv.writer(text, lineterminator="\n")
-    for remark in _remarks(case, body, axes):
+    for remark in (f"run = {run_id}", *_remarks(case, body, axes)):
         writer.writerow((f"# {remark}",))
     writer.writerow(
         (

@@ -9,6 +9,8 @@ from ..case.model import FACES
 from .tables import Table, table
 from .wording import SECTION_WORDS, figure, fixed, plain_name
 
+_SYMBOLS = (*SECTION_WORDS, "F_x", "F_y", "F_z")
+
 
 def lap_tables(laps: Sequence[LapLoads]) -> tuple[Table, ...]:
     """Return the tables of all laps."""
@@ -69,10 +71,11 @@ def _corners(lap: LapLoads) -> Table:
 
 def _row(lap: LapLoads, item: Extreme) -> Iterable[str]:
     unit = SECTION_WORDS.get(item.response, ("kN",))[0]
-    yield f"{item.of} {plain_name(item.response)}"
-    yield f"{fixed(item.least, 2, scale=1e3, sign=True)} {unit}"
+    signed = not item.response.endswith("shear")
+    yield f"{item.of} {item.response if item.response in _SYMBOLS else plain_name(item.response)}"
+    yield f"{fixed(item.least, 2, scale=1e3, sign=signed)} {unit}"
     yield when(lap, item.least_at)
-    yield f"{fixed(item.greatest, 2, scale=1e3, sign=True)} {unit}"
+    yield f"{fixed(item.greatest, 2, scale=1e3, sign=signed)} {unit}"
     yield when(lap, item.greatest_at)
 
 

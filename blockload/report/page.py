@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import base64
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from datetime import UTC, datetime
 from functools import cache
 from pathlib import Path
@@ -14,6 +14,8 @@ from jinja2 import Environment, FileSystemLoader, StrictUndefined
 from markupsafe import Markup, escape
 
 from .. import __version__
+from ..car.envelope import envelope
+from ..car.lap_model import LapLoads
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..margins.model import Margins
@@ -25,7 +27,10 @@ from .choice import extreme_indices, governing_index, lowest, lowest_per_criteri
 from .colours import margin_legend, stress_legend
 from .diagram import diagram_svg
 from .echo import echo_svg
+from .envelope_picture import envelope_svg
 from .faces import faces_svg
+from .lap_picture import lap_svg
+from .lap_tables import lap_tables
 from .pictures import Picture, Pictures
 from .routes import pad_table, routes
 from .run import RunLike
@@ -78,6 +83,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in shown[1:]],
         "diagram": _inline(diagram_svg(cases, index)),
         "studs": [*_pad_tables(run, shown[:1]), *(tables.stud_forces(cases, i) for i in shown)],
+        **_driven(case, run.laps),
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
         "margins": [judged_tables.margin_table(worst), judged_tables.cause_table(worst[:24])],
@@ -89,7 +95,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
     return _render("page.html", values | _identity(run.run_id, case, made, run.block.sha256 if run.block else None))
 
 
-def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) -> str:
+def loads_page(case: Case, cases: LoadCases, laps: Sequence[LapLoads] = (), *, made: datetime | None = None) -> str:
     """Return the page of `loads --report`: echo picture, load cases, free bodies, checks; no verdict."""
     index = governing_index(cases)
     values = {
@@ -107,6 +113,7 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in extreme_indices(cases) if i != index],
         "diagram": _inline(diagram_svg(cases, index)),
         "studs": [tables.stud_forces(cases, index)],
+        **_driven(case, laps),
         "free_bodies": tables.free_bodies(cases, index),
         "free_body_case": plain_name(cases.names[index]),
         "checks": [judged_tables.check_table(case.checks, "Checks of the case file")] if case.checks else [],
@@ -122,6 +129,18 @@ def loads_page(case: Case, cases: LoadCases, *, made: datetime | None = None) ->
         "requirements": (),
     }
     return _render("page.html", values | empty | _identity("loads", case, made, None))
+
+
+def _driven(case: Case, laps: Sequence[LapLoads]) -> dict[str, Any]:
+    """The envelope and the laps, as pictures with their captions and as tables."""
+    curves = []
+    if case.envelope is not None:
+        said = "Every vertex is a load case; seen from above, with the samples of the laps."
+        curves.append((_inline(envelope_svg(envelope(case), laps)), said))
+    for k, lap in enumerate(laps):
+        said = "Axial stud force, + pulled; rigid face on equal studs, before preload."
+        curves.append((_inline(lap_svg(lap, key=f"lap-{k}")), said))
+    return {"curves": curves, "lap_tables": lap_tables(laps)}
 
 
 def _shown_cases(cases: LoadCases, margins: Margins, index: int) -> list[int]:

@@ -4,19 +4,27 @@ from __future__ import annotations
 
 import hashlib
 import tomllib
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
+from ..car.balance import balance
+from ..car.envelope import envelope
+from ..car.lap_model import LapLoads
+from ..car.model import LoadCases
 from ..case.model import Case
 from .choice import governing_index
+from .curves import along_csv, envelope_csv
 from .files import probe_folder, refusal, write_beside, write_text
+from .handover import Installed, write_sheets
+from .lap_files import laps_written, write_laps
 from .page import page
 from .pictures import MISSING, Pictures, draw
 from .results import results, write_json
 from .run import RunLike
 from .surface import Surface, surface, write_fields
 
+_TABLES = (".csv", ".npy")
 SWITCHED_OFF = f"{MISSING}: they were switched off for this run."
 
 
@@ -26,7 +34,7 @@ def probe_output(folder: Path) -> None:
 
 
 def write_run(folder: Path, run: RunLike, *, pictures: bool = True) -> None:
-    """Write inputs/, fields.vtu, report.html and, last, results.json into `folder`.
+    """Write inputs/, sheets/, laps/, fields.vtu, report.html and, last, results.json into `folder`.
 
     Each file is written beside and renamed; no other name in the folder is touched. The results of an older run are
     taken away first, so that a run cut short never leaves old numbers beside new files.
@@ -44,16 +52,47 @@ def write_run(folder: Path, run: RunLike, *, pictures: bool = True) -> None:
     write_text(folder / "report.html", page(run, stills))
     data = results(run.case, run.cases, run.block, run.library, run.pads, run.margins, run_id=run.run_id)
     data["inputs"]["files"] = hashes
+    data |= laps_written(run.laps)
+    _hand_over(folder, run)
     write_json(folder / "results.json", data)
+
+
+def write_handover(
+    folder: Path,
+    case: Case,
+    cases: LoadCases,
+    laps: Sequence[LapLoads] = (),
+    *,
+    installed: Installed | None = None,
+    run_id: str = "loads",
+) -> None:
+    """Write what others work on with: hand-over sheets, sections along the car, the envelope; raises OutputError."""
+    write_sheets(folder, case, cases, laps=laps, installed=installed, run_id=run_id)
+    write_text(folder / "along-the-car.csv", along_csv(cases))
+    if case.envelope is not None:
+        write_text(folder / "envelope.csv", envelope_csv(envelope(case)))
+
+
+def _hand_over(folder: Path, run: RunLike) -> None:
+    """Hand over every load case, those among them that take no part in the verdict."""
+    cases, installed = run.cases, None
+    if not all(item.judged for item in run.case.manoeuvres) or run.case.catalogue is not None:
+        cases = balance(run.case)
+    if run.library is not None and run.pads is not None:
+        installed = Installed(cases=run.cases, library=run.library, pads=run.pads)
+    write_handover(folder / "sheets", run.case, cases, run.laps, installed=installed, run_id=run.run_id)
+    write_laps(folder / "laps", run.laps)
 
 
 def _clear(folder: Path) -> None:
     """Take away what an older run wrote under our names."""
-    for name in ("results.json", "report.html", "fields.vtu"):
+    old = [folder / name for name in ("results.json", "report.html", "fields.vtu")]
+    old += [path for part in ("sheets", "laps") for path in sorted((folder / part).glob("*")) if path.suffix in _TABLES]
+    for path in old:
         try:
-            (folder / name).unlink(missing_ok=True)
+            path.unlink(missing_ok=True)
         except OSError as error:
-            raise refusal(folder / name, error) from error
+            raise refusal(path, error) from error
 
 
 def _block(folder: Path, run: RunLike, *, pictures: bool) -> Pictures | None:
@@ -89,7 +128,7 @@ def _write_inputs(folder: Path, case: Case) -> dict[str, str]:
 
 
 def _sources(case: Case) -> Iterator[Path]:
-    """Yield the case file, the files it extends, its list of points and its aero maps."""
+    """Yield the case file, the files it extends, its list of points, its aero maps and its laps."""
     path: Path | None = case.path
     while path is not None:
         yield path
@@ -98,6 +137,7 @@ def _sources(case: Case) -> Iterator[Path]:
     if isinstance(points, str):
         yield case.path.parent / points
     yield from (device.map for device in case.devices if device.map is not None)
+    yield from (lap.file for lap in case.laps)
 
 
 def _extended(path: Path) -> Path | None:
@@ -109,4 +149,4 @@ def _extended(path: Path) -> Path | None:
     return path.parent / base if isinstance(base, str) else None
 
 
-__all__ = ["probe_output", "write_run", "write_text"]
+__all__ = ["probe_output", "write_handover", "write_laps", "write_run", "write_text"]
