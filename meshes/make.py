@@ -60,6 +60,12 @@ def _pad(
     )
 
 
+def _slight(pad: PadShape) -> PadShape:
+    """Return the pad on a short boss and a thin rib."""
+    rib = None if pad.rib is None else replace(pad.rib, thickness=0.6 * pad.rib.thickness, length=0.6 * pad.rib.length)
+    return replace(pad, radius=0.013, boss=0.0145, column=0.012, tail=0.014, depth=0.024, rib=rib)
+
+
 DEMO = VeeShape(
     front_x=-1.500,
     rear_x=-2.120,
@@ -107,9 +113,18 @@ DEMO = VeeShape(
     port_depth=0.040,
     pads=_pads(),
 )
-THIN = replace(DEMO, wall=0.005, head_wall=0.005, end_wall=0.007, bulkhead=0.010, cam_wall=0.007)
+THIN = replace(
+    DEMO,
+    wall=0.0018,
+    head_wall=0.0035,
+    end_wall=0.004,
+    bulkhead=0.009,
+    cam_wall=0.006,
+    sump_floor=0.005,
+    pads=tuple(_slight(pad) for pad in DEMO.pads),
+)
 
-SHAPES = {"demo-v8": (DEMO, 0.060), "demo-v8-thin": (THIN, 0.060)}
+SHAPES = {"demo-v8": (DEMO, 0.080), "demo-v8-thin": (THIN, 0.080)}
 
 
 def main(arguments: list[str]) -> int:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import hashlib
 from dataclasses import replace
 from types import MappingProxyType
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, TypeVar
 
 import numpy as np
 
@@ -15,7 +15,7 @@ from ..errors import BlockError
 from .attachments import area_notes, attach
 from .carried import carried_masses
 from .curved import EDGES, determinant_bound, least_determinant, scaled_jacobian
-from .model import Block
+from .model import AnyBlock, Block
 from .moments import MassProperties, mass_properties, volumes
 from .reading import RawBlock, read_mesh
 from .recipe import facet_numbers
@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 
 SIZE_BAND = (0.15, 3.0)
 """Largest dimension of an engine block that is believed [m] (our choice)."""
+AnyBlockT = TypeVar("AnyBlockT", bound=AnyBlock)
 _UNITS = {"mm": 1e-3, "cm": 1e-2, "in": 0.0254, "m": 1.0}
 
 
@@ -37,6 +38,8 @@ def build(case: Case) -> Block:
     spec = case.block
     if spec is None:
         raise BlockError("block", "the case has no [block]", "block.mesh")
+    if spec.mesh is None:
+        raise BlockError("block.mesh", "the case names no mesh", "a mesh file")
     raw = read_mesh(spec.mesh)
     where = str(spec.mesh)
     points = placed(raw.points, spec)
@@ -75,7 +78,7 @@ def build(case: Case) -> Block:
     return recarried(block, case)
 
 
-def recarried(block: Block, case: Case) -> Block:
+def recarried(block: AnyBlockT, case: Case) -> AnyBlockT:
     """Return the block with the carried masses that this case's engine leaves to it (the metal stays as meshed).
 
     Raises BlockError where engine and mesh contradict each other.

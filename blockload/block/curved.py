@@ -18,7 +18,7 @@ from ..arrays import Floats, Ints
 from ..errors import BlockError
 
 EDGES = ((0, 1), (1, 2), (0, 2), (0, 3), (1, 3), (2, 3))
-SAFE_SHARE = 0.05
+SAFE_SHARE = 0.02
 """A repaired element keeps at least this share of its straight determinant everywhere (our choice)."""
 
 
@@ -94,7 +94,7 @@ def straightened(points: Floats, elements: Ints) -> tuple[Floats, int]:
     moved = np.zeros(len(points), dtype=bool)
     points = points.copy()
     ends = np.array(EDGES)
-    for step in (*[0.15] * 10, *[0.4] * 5, *[1.0] * 6):
+    for step in (*[0.08] * 20, *[0.3] * 8, *[1.0] * 6):
         bad = determinant_bound(points, elements) < SAFE_SHARE * straight
         if not bad.any():
             break

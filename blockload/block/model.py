@@ -1,10 +1,13 @@
-"""The block as a mesh with names: volumes of one material each, and attachments through which wrenches enter."""
+"""A block with names: volumes of one material each, and attachments through which wrenches enter."""
 
 from __future__ import annotations
 
+from abc import ABC, abstractmethod
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
+
+import numpy as np
 
 from ..arrays import Floats, Ints
 
@@ -68,18 +71,14 @@ class CarriedMass:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Block:
-    """A 10-node tetrahedral mesh in car axes [m] with its names.
+class AnyBlock(ABC):
+    """What every block has, however far it is known, in car axes [m].
 
-    `mesh` is scikit-fem's MeshTet2 with `boundaries` (named facet sets) and `subdomains` (named volumes);
-    `volume_of` (n_elements,) indexes `volumes`; `materials` maps a volume to what it is made of.
-    mass [kg], cg (3,) and inertia (3, 3) about cg are those of the meshed metal.
-    `carried` are the masses the mesh does not have, the remainder of the engine included.
+    `materials` maps a volume to what it is made of. mass [kg], cg (3,) and inertia (3, 3) about cg are those of the
+    metal that is modelled; `carried` are the masses it does not have, the remainder of the engine included.
     """
 
-    mesh: MeshTet2
     volumes: tuple[str, ...]
-    volume_of: Ints
     materials: Mapping[str, Material]
     attachments: tuple[Attachment, ...]
     sha256: str
@@ -95,3 +94,51 @@ class Block:
             if item.name == name and (kind is None or item.kind == kind):
                 return item
         raise KeyError(name)
+
+    @abstractmethod
+    def outline(self) -> Floats:
+        """Return points (n, 3) that span the metal."""
+
+    @abstractmethod
+    def contact(self, item: Attachment) -> Floats:
+        """Return points (n, 3) of an attachment."""
+
+    @property
+    @abstractmethod
+    def counts(self) -> tuple[int, int]:
+        """Number of nodes and of elements."""
+
+    @property
+    @abstractmethod
+    def rigid_faces(self) -> bool:
+        """Whether the pads of a face are joined rigidly to each other."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Block(AnyBlock):
+    """A 10-node tetrahedral mesh with its names.
+
+    `mesh` is scikit-fem's MeshTet2 with `boundaries` (named facet sets) and `subdomains` (named volumes);
+    `volume_of` (n_elements,) indexes `volumes`.
+    """
+
+    mesh: MeshTet2
+    volume_of: Ints
+
+    def outline(self) -> Floats:
+        """Return the corners of all elements (n, 3)."""
+        return np.asarray(self.mesh.p.T)
+
+    def contact(self, item: Attachment) -> Floats:
+        """Return the corners of an attachment's facets (n, 3)."""
+        return np.asarray(self.mesh.p.T[np.unique(self.mesh.facets[:, item.facets])])
+
+    @property
+    def counts(self) -> tuple[int, int]:
+        """Number of nodes and of elements."""
+        return int(self.mesh.doflocs.shape[1]), int(self.mesh.t.shape[1])
+
+    @property
+    def rigid_faces(self) -> bool:
+        """False: metal lies between the pads."""
+        return False

@@ -63,15 +63,16 @@ class VeeSolids:
         (ay, az), (cy, cz) = self.shape.bank_axes(side)
         return along * ay + across * cy, self.crank + along * az + across * cz
 
-    def bore_cylinder(self, side: str, station: float, radius: float, along: Point) -> Any:
-        """Return a cylinder on a bore's axis."""
+    def bore_cylinder(self, name: str, side: str, station: float, along: Point) -> Any:
+        """Return a cylinder on a bore's axis, its round face named."""
         (ay, az), _ = self.shape.bank_axes(side)
         y, z = self.bank_point(side, along[0], 0.0)
-        return Cylinder(Pnt(self.front - station, y, z), Dir(0, ay, az), radius, along[1] - along[0])
+        start = (self.front - station, y, z)
+        return _tube(name, start, (0.0, ay, az), MM * self.shape.bore / 2, along[1] - along[0])
 
-    def crank_cylinder(self, start: float, stop: float, radius: float) -> Any:
-        """Return a cylinder on the crank axis between two stations."""
-        return Cylinder(Pnt(self.front - start, 0, self.crank), Dir(-1, 0, 0), radius, stop - start)
+    def crank_cylinder(self, name: str, start: float, stop: float, diameter: float) -> Any:
+        """Return a cylinder on the crank axis between two stations, its round face named."""
+        return _tube(name, (self.front - start, 0.0, self.crank), (-1.0, 0.0, 0.0), MM * diameter / 2, stop - start)
 
     def trapezoid(self, inset: float, start: float, stop: float) -> list[Point]:
         """Return the plan of crankcase and sump, moved inward by `inset`."""
@@ -104,14 +105,14 @@ class VeeSolids:
                 chest = self._bays(MM * s.bulkhead)[bay]
                 solid -= self.in_bank(side, (MM * s.bore_end, deck - 12), (wall - half, half - wall), chest)
             for i, station in enumerate(s.bores(side), start=1):
-                bore = self.bore_cylinder(side, MM * station, MM * s.bore / 2, (MM * s.bore_end, deck + 5))
-                solid -= _named(bore, f"bore_{side[0].upper()}{i}")
+                name = f"bore_{side[0].upper()}{i}"
+                solid -= self.bore_cylinder(name, side, MM * station, (MM * s.bore_end, deck + 5))
         solid = self._with_bosses(solid, "block")
         for i, station in enumerate(s.mains, start=1):
             solid -= self._cap_box(station, MM * s.parting_z - 5.0)
             solid -= self._main_bore(i, station)
-        solid -= _named(self.crank_cylinder(front - 5, self.inner_front + 5, MM * s.nose_bore / 2), "nose_bore")
-        return solid - _named(self.crank_cylinder(self.inner_rear - 5, rear + 5, MM * s.tail_bore / 2), "tail_bore")
+        solid -= self.crank_cylinder("nose_bore", front - 5, self.inner_front + 5, s.nose_bore)
+        return solid - self.crank_cylinder("tail_bore", self.inner_rear - 5, rear + 5, s.tail_bore)
 
     def _caps(self) -> Any:
         caps = None
@@ -195,8 +196,8 @@ class VeeSolids:
 
     def _main_bore(self, number: int, station: float) -> Any:
         half = MM * self.shape.bulkhead / 2 + 5.0
-        bore = self.crank_cylinder(MM * station - half, MM * station + half, MM * self.shape.main_bore / 2)
-        return _named(bore, f"main_{number}")
+        start, stop = MM * station - half, MM * station + half
+        return self.crank_cylinder(f"main_{number}", start, stop, self.shape.main_bore)
 
     def _with_ribs(self, solid: Any, volume: str) -> Any:
         for pad in self.shape.pads:
@@ -245,10 +246,11 @@ class VeeSolids:
 
 
 def curved_radii(shape: VeeShape) -> dict[str, float]:
-    """Return the radius of each kind of curved face by the start of its name [mm]."""
+    """Return the radius that sets the element size of each curved face and pad, by the start of its name [mm]."""
     radii = {"bore_": shape.bore, "main_": shape.main_bore, "nose_": shape.nose_bore, "tail_": shape.tail_bore}
-    bosses = {f"boss_{pad.face}_{pad.name}": 3.0 * pad.boss for pad in shape.pads}
-    return {name: MM * diameter / 2 for name, diameter in {**radii, **bosses}.items()}
+    bosses = {f"boss_{pad.face}_{pad.name}": 2.0 * min(1.8 * pad.boss, 8.0 * shape.wall) for pad in shape.pads}
+    pads = {f"pad_{pad.face}_{pad.name}": 3.0 * pad.radius for pad in shape.pads}
+    return {name: MM * diameter / 2 for name, diameter in {**radii, **bosses, **pads}.items()}
 
 
 def glued(solids: dict[str, Any], shape: VeeShape) -> Any:
@@ -277,6 +279,19 @@ def _face(plane: Any, points: Sequence[Point]) -> Any:
     for point in ordered[1:]:
         plane.LineTo(*point)
     return plane.Close().Face()
+
+
+def _tube(
+    name: str, start: tuple[float, float, float], way: tuple[float, float, float], radius: float, h: float
+) -> Any:
+    """Return a cylinder whose round face alone has the name: its ends may stay behind as floors of pockets."""
+    solid = Cylinder(Pnt(*start), Dir(*way), radius, h)
+    for face in solid.faces:
+        centre = (face.center.x, face.center.y, face.center.z)
+        height = sum((c - s) * w for c, s, w in zip(centre, start, way, strict=True))
+        if 0.25 * h < height < 0.75 * h:
+            face.name = name
+    return solid
 
 
 def _named(solid: Any, name: str) -> Any:

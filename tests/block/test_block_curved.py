@@ -28,7 +28,7 @@ def test_a_straight_element_is_bounded_by_six_times_its_volume() -> None:
 
 
 def test_the_bound_lies_below_det_j_everywhere_on_a_curved_element() -> None:
-    """det J of the quadratic map sampled at 2000 points, from shape functions written out here."""
+    """Against det J of the quadratic map sampled at 2000 points, from shape functions written out here."""
     rng = np.random.default_rng(3)
     points, elements = second_order(CORNERS, ONE)
     points[4:] += rng.uniform(-0.06, 0.06, (6, 3))
@@ -52,7 +52,7 @@ def test_the_regular_tetrahedron_scores_one_and_a_flat_one_nearly_zero() -> None
 
 
 def test_an_invalid_curved_element_is_pulled_straight_and_a_valid_one_left_alone() -> None:
-    corners = np.vstack([CORNERS, CORNERS + (5, 0, 0)])
+    corners = np.vstack([CORNERS, CORNERS + np.array([5.0, 0, 0])])
     points, elements = second_order(corners, np.array([[0, 1, 2, 3], [4, 5, 6, 7]]))
     points[elements[0, 4]] += (0.0, 0.45, 0.45)  # the middle of edge 01 pushed through the element
     points[elements[1, 4]] += (0.0, -0.02, -0.02)

@@ -15,7 +15,7 @@ from blockload.block.reading import read_mesh
 
 @pytest.mark.parametrize("suffix", [".vtu", ".vtk", ".xdmf", ".msh"])
 def test_names_come_back_bit_for_bit_with_their_overlaps(tmp_path, suffix: str) -> None:
-    """underside holds main_1 and main_2: the set that overlaps survives beside the others."""
+    """Underside holds main_1 and main_2: the set that overlaps survives beside the others."""
     path = write(tiny(), tmp_path / f"tiny{suffix}")
     saved = Mesh.load(tmp_path / f"tiny{suffix}") if suffix == ".vtu" else Mesh.load(write(tiny(), tmp_path / "t.vtu"))
     block = build(case_for(path))

@@ -109,7 +109,7 @@ def write_cells(
 
 
 def case_for(mesh: Path, **changes: Any) -> Case:
-    """Return the demo car's case with this mesh, the tiny box's studs and attachments; `changes` are BlockSpec fields."""
+    """Return the demo car's case with this mesh, the tiny box's studs and names; `changes` are BlockSpec fields."""
     case = read(DEMO)
     assert case.block is not None
     faces = {}

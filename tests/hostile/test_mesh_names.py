@@ -76,7 +76,7 @@ def test_a_pad_away_from_its_stud_gives_both_places(path) -> None:
     """A stud moved 50 mm up leaves its pad behind."""
     case = case_for(path)
     front = case.faces["front"]
-    studs = tuple(replace(s, at=s.at + (0, 0.05)) if s.name == "TL" else s for s in front.studs)
+    studs = tuple(replace(s, at=s.at + np.array([0.0, 0.05])) if s.name == "TL" else s for s in front.studs)
     with pytest.raises(BlockError) as caught:
         build(replace(case, faces={**case.faces, "front": replace(front, studs=studs)}))
 

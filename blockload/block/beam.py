@@ -1,0 +1,293 @@
+"""The block as a beam between its faces: uniform pieces along x, pads on rigid arms at the studs, one material.
+
+Sections are perpendicular to the car's x and may lie anywhere in y and z; between two stations every property (or
+every wall's points and thickness) runs linearly, beyond the outermost it stays. Two stations at one x make a step.
+Each piece takes the section at its middle; stress is known at both of its ends with the section there. Rigid faces
+make a beam stiffer than a block, walls that breathe or warp make it softer: it can rule a block out, never show it.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import json
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
+from itertools import pairwise
+from types import MappingProxyType
+
+import numpy as np
+
+from ..arrays import Floats, Ints, frozen
+from ..case.model import FACES, BeamSpec, BeamStation, BlockSpec, Case, Face
+from ..errors import BlockError
+from .attachments import WASHERS
+from .materials import Material
+from .model import AnyBlock, Attachment
+from .moments import MassProperties
+from .sections import Section, given_section, mass_per_length, section_stiffness
+from .thin_walls import Wall, between, thin_walled
+from .volumes import assign
+
+VOLUME = "beam"
+PIECES = 48
+"""Pieces between the faces: a taper of one to two is then within 1e-4 of the limit."""
+BARE_PAD = (2.0, 1.1)
+"""Outer and inner diameter of a pad over the thread's, where no washer is known (our choice)."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class BeamBlock(AnyBlock):
+    """Nodes x (N,) on the line y = z = 0 from the rear face to the front one, a uniform piece between each two.
+
+    elastic and per_length (N − 1, 6, 6): stiffness and mass of each piece's section about that line. fibres
+    (N − 1, 2, p, 2) and recovery (N − 1, 2, p, 3, 6): where at both ends of each piece stress xx, xy, xz is known, and
+    for which forces (p = 0 for a measured stiffness).
+    """
+
+    x: Floats
+    elastic: Floats
+    per_length: Floats
+    fibres: Floats
+    recovery: Floats
+
+    def outline(self) -> Floats:
+        """Return the fibres, or without any the attachments (n, 3)."""
+        ends = np.stack([self.x[:-1], self.x[1:]], axis=1)
+        along = np.broadcast_to(ends[:, :, None, None], (*self.fibres.shape[:3], 1))
+        fibres = np.concatenate([along, self.fibres], axis=3).reshape(-1, 3)
+        return np.concatenate([fibres, [item.centroid for item in self.attachments]])
+
+    def contact(self, item: Attachment) -> Floats:
+        """Return an attachment's centre (1, 3)."""
+        return item.centroid[None]
+
+    @property
+    def counts(self) -> tuple[int, int]:
+        """Number of nodes and of elements."""
+        return len(self.x), len(self.x) - 1
+
+    @property
+    def rigid_faces(self) -> bool:
+        """True: pads sit on rigid arms from the end of the beam."""
+        return True
+
+
+def build_beam(case: Case) -> BeamBlock:
+    """Return the block of a case as a beam in car axes, without carried masses.
+
+    Raises BlockError for a beam that cannot be used.
+    """
+    spec = case.block
+    if spec is None or spec.beam is None:
+        raise BlockError("block.beam", "the case describes no beam", "a [block.beam] table")
+    material = assign((VOLUME,), spec.materials)[VOLUME]
+    beam, faces = spec.beam, case.faces
+    if beam.stiffness is not None:
+        x, elastic, per_length = _measured(beam, faces)
+        fibres, recovery = np.zeros((len(x) - 1, 2, 0, 2)), np.zeros((len(x) - 1, 2, 0, 3, 6))
+    else:
+        x, elastic, per_length, fibres, recovery = _sectioned(beam, faces, material)
+    metal = _weighed(x, per_length)
+    return BeamBlock(
+        x=frozen(x),
+        elastic=frozen(elastic),
+        per_length=frozen(per_length),
+        fibres=frozen(fibres),
+        recovery=frozen(recovery),
+        volumes=(VOLUME,),
+        materials=MappingProxyType({VOLUME: material}),
+        attachments=tuple(_attachments(spec, beam, faces)),
+        sha256=_digest(case),
+        mass=metal.mass,
+        cg=metal.cg,
+        inertia=metal.inertia,
+        metadata=MappingProxyType({"stations": [item.name for item in beam.stations]}),
+    )
+
+
+def _sectioned(
+    beam: BeamSpec, faces: Mapping[str, Face], material: Material
+) -> tuple[Floats, Floats, Floats, Floats, Floats]:
+    """Nodes, stiffness and mass of each piece, fibres and recovery at both ends of each piece."""
+    shear = material.youngs_modulus / (2 * (1 + material.poissons_ratio))
+    x, ends, middles = [faces["rear"].x], [], []
+    for first, last, left, right in _bays(beam.stations, faces["rear"].x, faces["front"].x):
+        count = max(1, round(PIECES * (right - left) / (faces["front"].x - faces["rear"].x)))
+        nodes = np.linspace(left, right, count + 1)
+        at = [_section(first, last, place, material) for place in nodes]
+        middles += [_section(first, last, place, material) for place in (nodes[1:] + nodes[:-1]) / 2]
+        ends += [(at[k], at[k + 1]) for k in range(count)]
+        x += nodes[1:].tolist()
+    nodes = np.array(x)
+    elastic = np.array([section_stiffness(item, material.youngs_modulus, shear) for item in middles])
+    weight = np.array([material.density * item.area for item in middles])
+    share = 1.0 if beam.mass is None else beam.mass / float(weight @ np.diff(nodes))
+    per_length = [
+        mass_per_length(share * mass, item.centroid, share * mass * item.second / item.area)
+        for mass, item in zip(weight, middles, strict=True)
+    ]
+    fibres = np.array([[item.fibres for item in pair] for pair in ends])
+    recovery = np.array([[item.recovery for item in pair] for pair in ends])
+    return nodes, elastic, np.array(per_length), fibres, recovery
+
+
+def _bays(
+    stations: tuple[BeamStation, ...], rear: float, front: float
+) -> Iterator[tuple[BeamStation, BeamStation, float, float]]:
+    """Yield (rear station, front station, from x, to x) of every bay, those beyond the outermost stations included."""
+    if not stations:
+        raise BlockError("block.beam", "no station", "at least one section")
+    bays = [(stations[0], stations[0], rear, stations[0].x)]
+    bays += [(a, b, a.x, b.x) for a, b in pairwise(stations)]
+    bays.append((stations[-1], stations[-1], stations[-1].x, front))
+    yield from (bay for bay in bays if bay[3] - bay[2] > 1e-6)
+
+
+def _section(first: BeamStation, last: BeamStation, x: float, material: Material) -> Section:
+    share = 0.0 if last.x == first.x else (x - first.x) / (last.x - first.x)
+    if first.walls:
+        walls = between(_walls(first), _walls(last), share)
+        return thin_walled(walls, f"block.beam.stations.{first.name}.walls")
+
+    def mixed(name: str) -> Floats:
+        a, b = (np.asarray(_property(item, name, material), dtype=float) for item in (first, last))
+        return (1 - share) * a + share * b
+
+    about_y, about_z = mixed("second_moments")
+    product = float(mixed("product"))
+    return given_section(
+        area=float(mixed("area")),
+        centroid=mixed("centroid"),
+        second=np.array([[about_z, product], [product, about_y]]),
+        torsion_constant=float(mixed("torsion_constant")),
+        shear_centre=mixed("shear_centre"),
+        shear_area=np.diag(mixed("shear_areas")),
+        fibres=mixed("fibres"),
+        torsion_modulus=None if first.torsion_modulus is None else float(mixed("torsion_modulus")),
+    )
+
+
+def _walls(station: BeamStation) -> dict[str, Wall]:
+    return {
+        name: Wall(points=wall.points, thickness=wall.thickness, closed=wall.closed)
+        for name, wall in station.walls.items()
+    }
+
+
+def _property(station: BeamStation, name: str, material: Material) -> object:
+    """Return a property; the shear centre is by default the centroid, shear areas those of a thin square tube."""
+    value = getattr(station, name)
+    if value is None and name == "shear_centre":
+        return station.centroid
+    if value is None and name == "shear_areas":
+        return square_tube_shear(material.poissons_ratio) * np.full(2, station.area)
+    return value
+
+
+def square_tube_shear(poisson: float) -> float:
+    """Return shear area over area of a thin square tube (G. R. Cowper, J. Appl. Mech. 33 (1966) 335-340)."""
+    return 20 * (1 + poisson) / (48 + 39 * poisson)
+
+
+def _measured(beam: BeamSpec, faces: Mapping[str, Face]) -> tuple[Floats, Floats, Floats]:
+    """One thin round tube through the studs with the measured bending and torsion: A = 2I/r², A_s = J/2r²."""
+    given = beam.stiffness
+    if given is None or beam.mass is None:
+        raise BlockError("block.beam", "no measured stiffness with its mass", "stiffness and mass")
+    rear, front = faces["rear"].x, faces["front"].x
+    length = front - rear
+    at = [np.array([stud.at for stud in faces[name].studs]) for name in FACES]
+    centroid = np.mean([places.mean(axis=0) for places in at], axis=0)
+    radius = np.sqrt(np.mean([((places - places.mean(axis=0)) ** 2).sum(axis=1).mean() for places in at]))
+    bending = np.array([given.bending_lateral, given.bending_vertical]) * length
+    torsion = given.torsion * length
+    tube = Section(
+        area=float(2 * bending.mean() / radius**2),
+        centroid=centroid,
+        second=np.diag(bending),
+        torsion_constant=torsion,
+        shear_centre=centroid,
+        shear_area=np.eye(2) * torsion / (2 * radius**2),
+        fibres=np.zeros((0, 2)),
+        recovery=np.zeros((0, 3, 6)),
+    )
+    x = np.linspace(rear, front, PIECES + 1)
+    weight = mass_per_length(beam.mass / length, centroid, np.eye(2) * beam.mass / length * radius**2 / 2)
+    elastic = section_stiffness(tube, 1.0, 1.0)
+    return x, np.tile(elastic, (PIECES, 1, 1)), np.tile(weight, (PIECES, 1, 1))
+
+
+def _weighed(x: Floats, per_length: Floats) -> MassProperties:
+    """Mass properties of the pieces: each its slice's, plus that of its own length along x."""
+    length, middle = np.diff(x), (x[1:] + x[:-1]) / 2
+    slices = length[:, None, None] * per_length
+    each = slices[:, 0, 0]
+    mass = float(each.sum())
+    first = np.column_stack([each * middle, slices[:, 2, 3], slices[:, 0, 4]])
+    cg = first.sum(axis=0) / mass
+    about_origin = slices[:, 3:, 3:].sum(axis=0)
+    along = float((each * (middle**2 + length**2 / 12)).sum())
+    about_origin[1, 1] += along
+    about_origin[2, 2] += along
+    mixed = middle @ first[:, 1:]
+    about_origin[0, 1:] -= mixed
+    about_origin[1:, 0] -= mixed
+    inertia = about_origin - mass * (cg @ cg * np.eye(3) - np.outer(cg, cg))
+    return MassProperties(mass=mass, cg=frozen(cg), inertia=frozen(inertia))
+
+
+def _attachments(spec: BlockSpec, beam: BeamSpec, faces: Mapping[str, Face]) -> Iterator[Attachment]:
+    """Yield pads at the studs of both faces, then the places in file order."""
+    for kind, normal in (("front", 1.0), ("rear", -1.0)):
+        face = faces[kind]
+        for stud in face.studs:
+            outer, inner = pad_ring(stud.size)
+            area = np.pi / 4 * (outer**2 - inner**2)
+            moment = np.pi / 64 * (outer**4 - inner**4)
+            yield _point(stud.name, kind, [face.x, *stud.at], normal=normal, area=area, moment=moment)
+    places = dict(beam.places)
+    if spec.carried_on not in places:
+        places[spec.carried_on] = _middle(beam, faces)
+    for name, at in places.items():
+        yield _point(name, "other", at)
+
+
+def _point(
+    name: str, kind: str, at: object, *, normal: float = 0.0, area: float = 0.0, moment: float = 0.0
+) -> Attachment:
+    none: Ints = np.zeros(0, dtype=np.int64)
+    return Attachment(
+        name=name,
+        kind=kind,
+        sets=(),
+        facets=frozen(none, np.int64),
+        area=area,
+        centroid=frozen(at),  # type: ignore[arg-type]
+        normal=frozen([normal, 0.0, 0.0]),
+        moments=frozen(np.diag([0.0, moment, moment])),
+    )
+
+
+def _middle(beam: BeamSpec, faces: Mapping[str, Face]) -> Floats:
+    """Half-way between the faces, at the centroid of the nearest station or of the studs."""
+    x = (faces["front"].x + faces["rear"].x) / 2
+    if beam.stations:
+        near = min(beam.stations, key=lambda item: abs(item.x - x))
+        centroid = near.centroid if near.centroid is not None else thin_walled(_walls(near)).centroid
+    else:
+        centroid = np.mean([np.mean([stud.at for stud in faces[name].studs], axis=0) for name in FACES], axis=0)
+    return np.array([x, *centroid])
+
+
+def pad_ring(size: str) -> tuple[float, float]:
+    """Return outer and inner diameter [m] of a pad: the plain washer's of the thread, else BARE_PAD of it."""
+    digits = size.upper().lstrip("M").split("X")[0].strip()
+    known = WASHERS.get(int(digits)) if digits.isdigit() else None
+    outer, inner = known if known is not None else tuple(float(digits) * ratio for ratio in BARE_PAD)
+    return 1e-3 * outer, 1e-3 * inner
+
+
+def _digest(case: Case) -> str:
+    """Hash of what the case says of the beam, as a mesh has one of its file."""
+    text = json.dumps(case.document.get("block", {}).get("beam", {}), sort_keys=True, default=str)
+    return hashlib.sha256(text.encode()).hexdigest()
