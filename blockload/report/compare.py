@@ -6,6 +6,7 @@ from collections.abc import Iterable, Mapping
 from typing import Any
 
 from ..car.model import SECTION
+from .changes import change_table
 from .judged_tables import amount
 from .tables import Table, table
 from .wording import ABSENT, fixed, plain_name
@@ -29,6 +30,7 @@ def compare(first: Data, second: Data, *, names: tuple[str, str] = ("A", "B")) -
         _verdicts(first, second, title),
         _sections(first, second),
         _studs(first, second),
+        change_table(first, second),
         _margins(first, second),
         _named(first, second, "requirements", "Required of the block"),
         _stiffness(first, second),

@@ -1,4 +1,4 @@
-"""What the diagrams draw, as CSV: sections along the car for every load case, and the boundary of the envelope."""
+"""What diagrams and free-body tables show, as CSV: sections along the car, free bodies, the envelope's boundary."""
 
 from __future__ import annotations
 
@@ -8,11 +8,13 @@ from collections.abc import Iterable
 
 import numpy as np
 
+from ..arrays import Floats
 from ..car.envelope import Envelope
 from ..car.limits import LIMITS
-from ..car.model import SECTION, LoadCases
+from ..car.model import BODIES, SECTION, LoadCases, Term
 from ..car.stations import reference_line, section_along, stations
 
+_WRENCH = ("F_x [N]", "F_y [N]", "F_z [N]", "M_x [N*m]", "M_y [N*m]", "M_z [N*m]")
 _UNITS = ("N", "N", "N", "N*m", "N*m", "N*m")
 
 
@@ -28,6 +30,23 @@ def along_csv(cases: LoadCases) -> str:
         for k in range(len(x))
     )
     return _csv(heads, rows)
+
+
+def free_bodies_csv(cases: LoadCases) -> str:
+    """Return every force on every body of every load case: a row per load case and line that is not nothing."""
+    heads = ("load case", "body", "line", "x [m]", "y [m]", "z [m]", *_WRENCH)
+    rows = (
+        (name, term.body, term.label, *(f"{v + 0.0:.9g}" for v in (*at[i], *term.force[i], *term.moment[i])))
+        for i, name in enumerate(cases.names)
+        for body in BODIES
+        for term, at in _lines(cases, body)
+        if term.force[i].any() or term.moment[i].any()
+    )
+    return _csv(heads, rows)
+
+
+def _lines(cases: LoadCases, body: str) -> Iterable[tuple[Term, Floats]]:
+    return ((term, np.broadcast_to(term.at, term.force.shape)) for term in cases.terms if term.body == body)
 
 
 def envelope_csv(found: Envelope) -> str:

@@ -14,7 +14,7 @@ from ..car.lap_model import LapLoads
 from ..car.model import LoadCases
 from ..case.model import Case
 from .choice import governing_index
-from .curves import along_csv, envelope_csv
+from .curves import along_csv, envelope_csv, free_bodies_csv
 from .files import probe_folder, refusal, write_beside, write_text
 from .handover import Installed, write_sheets
 from .lap_files import laps_written, write_laps
@@ -66,9 +66,10 @@ def write_handover(
     installed: Installed | None = None,
     run_id: str = "loads",
 ) -> None:
-    """Write what others work on with: hand-over sheets, sections along the car, the envelope; raises OutputError."""
+    """Write what others work on with: hand-over sheets, free bodies, sections along the car, the envelope."""
     write_sheets(folder, case, cases, laps=laps, installed=installed, run_id=run_id)
     write_text(folder / "along-the-car.csv", along_csv(cases))
+    write_text(folder / "free-bodies.csv", free_bodies_csv(cases))
     if case.envelope is not None:
         write_text(folder / "envelope.csv", envelope_csv(envelope(case)))
 

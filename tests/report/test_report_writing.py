@@ -45,6 +45,7 @@ def test_a_run_writes_results_report_and_inputs_with_one_id(tmp_path: Path) -> N
         "sheets/force-on-the-engine.csv",
         "sheets/force-on-the-gearbox.csv",
         "sheets/force-on-the-tub.csv",
+        "sheets/free-bodies.csv",
     ]
     assert data["run_id"] == "0123456789ab"
     assert 'name="run-id" content="0123456789ab"' in (tmp_path / "out/report.html").read_text(encoding="utf-8")
