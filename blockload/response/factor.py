@@ -2,15 +2,16 @@
 
 The matrix is symmetric positive definite and sparse. "fronts" is the Cholesky of this room on scipy's LAPACK and is
 always there, as is "scipy", its general sparse LU in the same order; "ngsolve" brings an independent sparse Cholesky;
-"pypardiso" (proprietary, free of charge, the extra `fast`) is the quickest. "auto" takes the first of pypardiso and
-fronts that imports; the one taken is part of the result. None of them may change a result: whoever solves checks
+"pypardiso" (proprietary, free of charge, the extra `fast`) uses many cores best. "auto" takes the first of pypardiso
+and fronts that imports; the one taken is part of the result. None of them may change a result: whoever solves checks
 the residual of every column.
 """
 
 from __future__ import annotations
 
+import weakref
 from collections.abc import Callable
-from importlib.util import find_spec
+from importlib import import_module
 from typing import Any
 
 import numpy as np
@@ -22,6 +23,9 @@ from .dissection import dissect
 Solve = Callable[[Floats], Floats]
 SOLVERS = ("pypardiso", "fronts", "ngsolve", "scipy")
 OURS = ("fronts", "scipy")
+# Entries (1-based) of the control array that differ from 0: values set by hand, parallel nested dissection; no
+# refinement, scaling or matching, which a positive definite matrix does not need.
+CONTROL = {1: 1, 2: 3}
 
 
 def choose(solver: str) -> str:
@@ -36,8 +40,14 @@ def choose(solver: str) -> str:
 
 
 def installed(solver: str) -> bool:
-    """Whether a solver can be used here."""
-    return solver in OURS or find_spec(solver) is not None
+    """Whether a solver can be used here: found, and with the libraries it needs."""
+    if solver in OURS:
+        return True
+    try:
+        import_module(solver)
+    except (ImportError, OSError):
+        return False
+    return True
 
 
 def factorise(matrix: Any, solver: str, points: Floats) -> Solve:
@@ -107,18 +117,21 @@ def _ngsolve(matrix: Any, points: Floats) -> Solve:
 
 def _pypardiso(matrix: Any, points: Floats) -> Solve:
     from pypardiso import PyPardisoSolver
+    from pypardiso.pardiso_wrapper import PyPardisoError
     from scipy import sparse
 
     solver = PyPardisoSolver(mtype=2)
-    for entry in range(1, 65):
-        solver.set_iparm(entry, 0)
-    for entry, value in ((1, 1), (2, 3)):
+    for entry, value in CONTROL.items():
         solver.set_iparm(entry, value)
     upper = sparse.csr_matrix(sparse.triu(matrix.tocsr(), format="csr"))
-    solver.factorize(upper)
+    try:
+        solver.factorize(upper)
+    except PyPardisoError as trouble:
+        raise SolveError("factoring the block", f"pypardiso: {trouble}", "", "check the mesh") from trouble
 
     def solve(columns: Floats) -> Floats:
         result: Floats = solver.solve(upper, np.asfortranarray(columns))
         return result
 
+    weakref.finalize(solve, solver.free_memory, everything=True)
     return solve

@@ -113,7 +113,10 @@ def test_auto_names_an_installed_solver_and_an_unknown_one_is_refused() -> None:
 
 
 def test_a_missing_solver_is_refused_with_what_to_do(monkeypatch: pytest.MonkeyPatch) -> None:
-    monkeypatch.setattr(factoring, "find_spec", lambda name: None)
+    def missing(name: str) -> None:
+        raise ImportError(name)
+
+    monkeypatch.setattr(factoring, "import_module", missing)
 
     assert choose("auto") == "fronts"
     with pytest.raises(SolveError, match="not installed"):
