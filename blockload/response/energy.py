@@ -31,7 +31,7 @@ def strain_energy(matrix: Any, motion: Floats) -> Floats:
 
 def relative_gap(flexibility: Floats, energy: Floats) -> float:
     """Largest relative gap between ½ F_ii and the strain energies (6A,) of the unit wrenches."""
-    return float(np.max(np.abs(0.5 * np.diag(flexibility) - energy) / energy))
+    return float(np.max(np.abs(0.5 * np.diag(flexibility) - energy) / energy, initial=0.0))
 
 
 def energy_gap(library: Library, block: Block) -> float:

@@ -16,6 +16,7 @@ import numpy as np
 from ..arrays import Floats, Ints, frozen
 from ..block.model import Block
 from .columns import BLOCK_OF_COLUMNS, Progress, Solved, solve_columns
+from .connection import require_one_body
 from .elements import Elements, elements_of
 from .energy import relative_gap
 from .factor import choose, factorise
@@ -69,6 +70,7 @@ def _solve(block: Block, solver: str, report: Progress, held: Ints | None) -> Li
     elements = elements_of(block)
     report("assembling the stiffness", 0.0)
     matrix = stiffness(elements)
+    require_one_body(matrix, block)
     body = free_body(elements.points, mass(elements))
     loads = unit_loads(block, elements)
     held = body.held() if held is None else held

@@ -29,7 +29,10 @@ _CENTRE = np.full((1, 3), 0.25)
 
 
 def stiffness(elements: Elements) -> Any:
-    """Assemble the stiffness (3N, 3N) [N/m]: symmetric, as 3×3 node blocks in rows with sorted indices (BSR)."""
+    """Assemble the stiffness (3N, 3N) [N/m]: symmetric, as 3×3 node blocks in rows with sorted indices (BSR).
+
+    Memory: 4 kB per element for its blocks while they are summed, and chunks of at most CEILING bytes on top.
+    """
     values = np.empty((len(elements.nodes), _FIRST.size, 3, 3))
     flat = straight(elements)
     for chosen, order, points in (
