@@ -133,8 +133,11 @@ def extreme_cases(case: Case) -> Iterator[tuple[str, Case]]:
         yield found.words(corner), replace(case, devices=found.devices(area), aero_split=())
 
 
-def bounds(found: Splits, faces: Mapping[str, FaceLoads]) -> AeroBounds:
-    """Least and greatest of every face component and stud force, from faces whose first sources are the columns."""
+def bounds(found: Splits, faces: Mapping[str, FaceLoads], wheel_force: Floats) -> AeroBounds:
+    """Least and greatest of every face component and stud force.
+
+    Both `faces` and wheel_force (C, S, 4, 3) have the columns of `found` as their first sources.
+    """
     section, axial, shear, resultant = {}, {}, {}, {}
     for name, face in faces.items():
         signs = np.array((1.0, 1.0, 1.0, 1.0, -1.0, -1.0)) * (1.0 if name == "front" else -1.0)
@@ -149,6 +152,7 @@ def bounds(found: Splits, faces: Mapping[str, FaceLoads]) -> AeroBounds:
         stud_axial=MappingProxyType(axial),
         stud_shear=MappingProxyType(shear),
         stud_shear_resultant=MappingProxyType(resultant),
+        lifts=frozen((_at_corners(found, wheel_force[..., 2]) <= 0.0).any(axis=(0, 2)), np.bool_),
     )
 
 

@@ -120,7 +120,7 @@ def balance(
         lifted=frozen(tyres.lifted, bool),
         ride_height=frozen(inputs.air.ride_height),
         outside_map=inputs.air.outside,
-        aero_bounds=None if extremes is None else bounds(extremes, faces),
+        aero_bounds=None if extremes is None else bounds(extremes, faces, wheel_force),
         kind=tuple(it.kind for it in run),
         fatigue_exempt=tuple(it.fatigue_exempt for it in run),
         group=tuple(it.group for it in run),

@@ -76,6 +76,7 @@ class AeroBounds:
 
     section maps a face to (2, C, 6) in the order of SECTION; stud_axial to (2, C, n); stud_shear to (2, C, n, 2), its
     components; stud_shear_resultant to (2, C, n). `splits` says in words which carriers share each extreme split.
+    The bounds are exact while every wheel stays down at every split; `lifts` (C,) marks the cases where one would not.
     """
 
     splits: tuple[str, ...]
@@ -83,6 +84,7 @@ class AeroBounds:
     stud_axial: Mapping[str, Floats]
     stud_shear: Mapping[str, Floats]
     stud_shear_resultant: Mapping[str, Floats]
+    lifts: NDArray[np.bool_]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)

@@ -141,12 +141,13 @@ def bounds_table(cases: LoadCases) -> Table | None:
                 continue
             worst = int(np.argmax(axial[1]))
             cells = (_range(*ends[:, k]) for k in moves)
-            rows.append((plain_name(name), face, *cells, loads.studs[worst], _range(*axial[:, worst])))
+            said = f"{plain_name(name)} (a wheel lifts)" if found.lifts[i] else plain_name(name)
+            rows.append((said, face, *cells, loads.studs[worst], _range(*axial[:, worst])))
     columns = ("load case", "face", *(SECTION[k] for k in moves), "most pulled stud", "its pull")
     note = (
         "kN and kN·m: least to greatest over every split of the stated totals that keeps total and balance, each "
         f"carrier pressing down by 0 or more: {len(found.splits)} extreme splits, the load cases standing at their "
-        "mean. What this decides is not shown."
+        "mean. What this decides is not shown. Where a wheel lifts at some split, the bounds are those of four wheels."
     )
     return table("Open because only totals of the aero are known", columns, rows, note)
 
