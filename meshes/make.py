@@ -63,7 +63,7 @@ def _pad(
 def _slight(pad: PadShape) -> PadShape:
     """Return the pad on a short boss and a thin rib."""
     rib = None if pad.rib is None else replace(pad.rib, thickness=0.6 * pad.rib.thickness, length=0.6 * pad.rib.length)
-    return replace(pad, radius=0.013, boss=0.0145, column=0.012, tail=0.014, depth=0.024, rib=rib)
+    return replace(pad, radius=0.012, boss=0.0135, column=0.012, tail=0.013, depth=0.024, rib=rib)
 
 
 DEMO = VeeShape(
@@ -79,6 +79,7 @@ DEMO = VeeShape(
     stagger=0.010,
     deck=0.202,
     bank_half_width=0.057,
+    deck_plate=0.012,
     main_bore=0.066,
     bulkhead=0.014,
     cap_half_width=0.066,
@@ -115,7 +116,7 @@ DEMO = VeeShape(
 )
 THIN = replace(
     DEMO,
-    wall=0.0018,
+    wall=0.0017,
     head_wall=0.0035,
     end_wall=0.004,
     bulkhead=0.009,

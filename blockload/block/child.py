@@ -18,7 +18,7 @@ import numpy as np
 from netgen.occ import OCCGeometry
 
 from .shape import VeeShape, shape_from
-from .solids import VeeSolids, curved_radii, glued
+from .solids import build, curved_radii, glued
 
 TO_VTK = [0, 2, 1, 3, 5, 7, 4, 6, 9, 8]
 """netgen's mid nodes (01)(02)(03)(12)(13)(23) to (01)(12)(02)(03)(13)(23), corners 1, 2 swapped: all come negative."""
@@ -29,7 +29,7 @@ CURVED_SIZE = 0.47
 
 def mesh_arrays(shape: VeeShape, size: float, settings: dict[str, Any]) -> dict[str, Any]:
     """Return the arrays of the mesh of this shape; `size` in mm."""
-    solids = VeeSolids(shape).build()
+    solids = build(shape)
     compound = glued(solids, shape)
     for edge in compound.edges:
         chord = math.dist(tuple(edge.start), tuple(edge.end))

@@ -74,6 +74,7 @@ class VeeShape:
     stagger: float
     deck: float
     bank_half_width: float
+    deck_plate: float
     main_bore: float
     bulkhead: float
     cap_half_width: float
