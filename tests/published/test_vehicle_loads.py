@@ -190,12 +190,10 @@ def test_section_loads_of_a_stressed_engine(published: Published) -> None:
 def test_stud_forces_of_the_stressed_engine_on_the_rules_pattern(published: Published) -> None:
     """Lower studs pulled with 8239.8 N each, the middle pair pressed a little, the top pair with 7162.3 N."""
     axial = stressed_engine().faces["front"].stud_axial[0].sum(axis=0)
-    for row, expected in enumerate((8239.8, -1077.5, -7162.3)):
-        for side in range(2):
-            got = axial[2 * row + side]
-            published(
-                f"stud {2 * row + side}", RULES + " + statics", expected=expected, got=got, unit="N", tolerance=1e-4
-            )
+    for row, (level, expected) in enumerate((("lower", 8239.8), ("middle", -1077.5), ("upper", -7162.3))):
+        for column, side in enumerate(("left", "right")):
+            what, got = f"own example's bending, {level} {side} stud", axial[2 * row + column]
+            published(what, RULES + " + statics", expected=expected, got=got, unit="N", tolerance=1e-4)
 
 
 @pytest.mark.parametrize(
