@@ -15,10 +15,10 @@ from ..errors import BlockError
 from .attachments import area_notes, attach
 from .carried import carried_masses
 from .curved import EDGES, determinant_bound, least_determinant, scaled_jacobian
+from .facets import facet_numbers
 from .model import AnyBlock, Block
 from .moments import MassProperties, mass_properties, volumes
 from .reading import RawBlock, read_mesh
-from .recipe import facet_numbers
 from .volumes import assign, partition
 
 if TYPE_CHECKING:

@@ -35,6 +35,14 @@ def test_a_square_pad_has_the_area_centroid_normal_and_moments_of_the_formula(bl
             np.testing.assert_allclose(pad.moments, np.diag([0, 1, 1]) * 0.05**4 / 12, atol=1e-18)
 
 
+def test_a_pad_far_larger_than_its_washer_face_is_pointed_out(block) -> None:
+    """2500 mm² under an M12 stud whose washer face (ISO 7089, 24 over 13 mm) is 320 mm²."""
+    notes = block.metadata["pads_of_unusual_area"]
+
+    assert [note["pad"] for note in notes] == [f"{face} {name}" for face in ("front", "rear") for name in STUDS]
+    assert notes[0]["ratio"] == pytest.approx(2500 / (np.pi / 4 * (24**2 - 13**2)), rel=1e-12)
+
+
 def test_several_sets_are_united_and_listed(block) -> None:
     saddles = block.attachment("main_bearings")
 

@@ -88,7 +88,7 @@ def _faces(points: NDArray[Any], elements: NDArray[Any]) -> dict[str, NDArray[An
 
 def write(tiny_block: Tiny, path: Path, *, scale: float = 1.0) -> Path:
     """Write an MSH 4.1 file whose named cell sets carry faces and volumes (scikit-fem's encoding in a VTU)."""
-    from blockload.block.recipe import named_mesh
+    from blockload.block.facets import named_mesh
 
     names = list(tiny_block.faces)
     corners = np.vstack([tiny_block.faces[name][:, :3] for name in names]) if names else np.zeros((0, 3), dtype=int)

@@ -36,7 +36,7 @@ def test_a_foreign_format_lists_what_can_be_read(tmp_path) -> None:
     assert error.allowed == ".vtu, .vtk, .msh, .xdmf, .med"
 
 
-@pytest.mark.parametrize("suffix", [".vtu", ".msh", ".vtk", ".xdmf"])
+@pytest.mark.parametrize("suffix", [".vtu", ".msh", ".vtk", ".xdmf", ".med"])
 @pytest.mark.parametrize("share", [0.0, 0.3, 0.9])
 def test_a_truncated_file(tmp_path, capsys, suffix: str, share: float) -> None:
     """The reader's own printing and leaving of the process stay inside."""
