@@ -73,7 +73,8 @@ def check(
         progress("report", 0.0)
         write_run(folder, run, pictures=pictures)
     _show(*summary(run.case, run.cases, run.margins))
-    typer.echo(f"Written to {folder}: results.json, report.html" + (", fields.vtu" if run.block else ""))
+    fields = ", fields.vtu" if run.margins.surface is not None else ""
+    typer.echo(f"Written to {folder}: results.json, report.html{fields}")
     raise typer.Exit(0 if run.margins.verdict.word == "shown within scope" else 1)
 
 

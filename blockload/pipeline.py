@@ -20,7 +20,7 @@ from .car.balance import balance
 from .case.reading import read, replaced
 
 if TYPE_CHECKING:
-    from .block.model import Block
+    from .block.model import AnyBlock
     from .car.lap_model import LapLoads
     from .car.model import LoadCases
     from .case.model import Bound, Case, LapHistory
@@ -52,7 +52,7 @@ class Run:
     run_id: str
     case: Case
     cases: LoadCases
-    block: Block | None
+    block: AnyBlock | None
     library: Library | None
     pads: PadLoads | None
     margins: Margins
@@ -143,9 +143,13 @@ def check(
     )
 
 
-def _respond(case: Case, *, solver: str, cache: Path | None, progress: Progress) -> tuple[Block | None, Library | None]:
+def _respond(
+    case: Case, *, solver: str, cache: Path | None, progress: Progress
+) -> tuple[AnyBlock | None, Library | None]:
     if case.block is None:
         return None, None
+    if case.block.use == "beam":
+        return _respond_beam(case)
     from .block.building import build
     from .response.respond import respond
 
@@ -154,7 +158,16 @@ def _respond(case: Case, *, solver: str, cache: Path | None, progress: Progress)
     return block, respond(block, solver=solver, cache=cache, progress=progress)
 
 
-def _with_block_twist(case: Case, block: Block | None, library: Library | None) -> Case:
+def _respond_beam(case: Case) -> tuple[AnyBlock, Library]:
+    from .block.beam import build_beam
+    from .block.building import recarried
+    from .response.beam_library import respond_beam
+
+    beam = build_beam(case)
+    return recarried(beam, case), respond_beam(beam)
+
+
+def _with_block_twist(case: Case, block: AnyBlock | None, library: Library | None) -> Case:
     """Put the block's own torsional stiffness in series with the rest of the chassis, where the case asks for it."""
     if block is None or library is None or not case.chassis_without_block:
         return case
@@ -166,7 +179,7 @@ def _with_block_twist(case: Case, block: Block | None, library: Library | None) 
 
 
 def _judge(
-    case: Case, cases: LoadCases, block: Block | None, library: Library | None
+    case: Case, cases: LoadCases, block: AnyBlock | None, library: Library | None
 ) -> tuple[PadLoads | None, Margins]:
     from .margins.judging import judge
 
@@ -181,7 +194,7 @@ def _judge(
 
 
 def _over_splits(
-    case: Case, cases: LoadCases, block: Block | None, library: Library | None, margins: Margins, progress: Progress
+    case: Case, cases: LoadCases, block: AnyBlock | None, library: Library | None, margins: Margins, progress: Progress
 ) -> Margins:
     """Widen the margins over every split of whole-car aero, where no more than its totals is known."""
     if cases.aero_bounds is None:
@@ -197,7 +210,7 @@ def _over_splits(
 
 
 def _with_movements(
-    case: Case, block: Block | None, library: Library | None, margins: Margins, progress: Progress
+    case: Case, block: AnyBlock | None, library: Library | None, margins: Margins, progress: Progress
 ) -> Margins:
     """Rerun the dense part at both ends of every bounded input and lay the result over the verdict."""
     from .margins.movements import moved
@@ -209,7 +222,7 @@ def _with_movements(
     return moved(margins, tuple(found))
 
 
-def _movement(case: Case, bound: Bound, block: Block | None, library: Library | None) -> Movement:
+def _movement(case: Case, bound: Bound, block: AnyBlock | None, library: Library | None) -> Movement:
     from .margins.model import Movement
 
     ends = (_with_block_twist(other, block, library) for other in _ends(case, bound))

@@ -21,8 +21,7 @@ from ..arrays import Floats, Ints, frozen
 from ..case.model import FACES, BeamSpec, BeamStation, BlockSpec, Case, Face
 from ..errors import BlockError
 from .attachments import WASHERS
-from .materials import Material
-from .model import AnyBlock, Attachment
+from .model import AnyBlock, Attachment, Material
 from .moments import MassProperties
 from .sections import Section, given_section, mass_per_length, section_stiffness
 from .thin_walls import Wall, between, thin_walled

@@ -16,6 +16,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -114,7 +115,7 @@ def _graph(walls: Mapping[str, Wall], where: str) -> tuple[Floats, Ints, Floats]
     thickness: list[float] = []
     for name, wall in walls.items():
         numbers = [_number(points, point) for point in wall.points]
-        pairs = list(zip(numbers[:-1], numbers[1:], strict=True))
+        pairs = list(pairwise(numbers))
         if wall.closed and numbers[0] != numbers[-1]:
             pairs.append((numbers[-1], numbers[0]))
         if not pairs or any(a == b for a, b in pairs):

@@ -10,6 +10,7 @@ import numpy as np
 
 from ..arrays import Floats, frozen
 from ..units import UNITS, significant
+from .build_beam import build_beam
 from .fasteners import boss_stiffness
 from .messages import nearest_key
 from .model import (
@@ -31,36 +32,55 @@ _PAD_SOURCE = (
 
 
 def build_block(table: CaseTable, folder: Path, faces: Mapping[str, Face], notes: Notes) -> BlockSpec | None:
-    """Return where the block comes from, or None where no mesh is named."""
+    """Return where the block comes from, or None without a [block]."""
     given = table.block
     if given is None:
         return None
-    if given.mesh is None:
-        kinds = ", ".join(word for word in ("shape", "beam", "cad") if getattr(given, word) is not None)
-        found = f"names no mesh ({kinds} is not used yet)" if kinds else "names no mesh"
-        notes.problem("block.mesh", found, "a mesh file", "add mesh, or leave [block] out to judge by the faces alone")
+    use = _used(given, notes)
+    if use is None:
         return None
-    taken = {
-        name: notes.take(given, BlockTable, "block", name) for name in ("mesh_unit", "turn", "place", "carried_on")
-    }
+    meshed = given if given.mesh is not None else None
+    unit, turn, place = (
+        notes.take(meshed, BlockTable, "block", name) if meshed is not None else None
+        for name in ("mesh_unit", "turn", "place")
+    )
+    carried_on = notes.take(given, BlockTable, "block", "carried_on")
     attachments = given.attachments
     pads = {face: dict(getattr(attachments, face)) if attachments else {} for face in ("front", "rear", "other")}
-    for face in ("front", "rear"):
-        _check_pads(face, pads[face], faces, notes)
-    if taken["carried_on"] not in pads["other"]:
-        allowed = ", ".join(pads["other"]) or "none is named"
-        remedy = f'add {taken["carried_on"]} = "main_*" under [block.attachments.other]'
-        notes.problem("block.carried_on", f"{taken['carried_on']!r} is no attachment of the block", allowed, remedy)
+    beam = None if given.beam is None else build_beam(given.beam, faces, carried_on, notes)
+    if use == "mesh":
+        for face in ("front", "rear"):
+            _check_pads(face, pads[face], faces, notes)
+        if carried_on not in pads["other"]:
+            allowed = ", ".join(pads["other"]) or "none is named"
+            remedy = f'add {carried_on} = "main_*" under [block.attachments.other]'
+            notes.problem("block.carried_on", f"{carried_on!r} is no attachment of the block", allowed, remedy)
+    elif beam is not None:
+        pads["other"] = {name: name for name in (*beam.places, carried_on)}
     return BlockSpec(
-        mesh=folder / given.mesh,
-        mesh_unit=UNITS[taken["mesh_unit"]].factor,
-        turn=taken["turn"],
-        place=taken["place"],
-        carried_on=taken["carried_on"],
+        use=use,
+        beam=beam,
+        mesh=None if given.mesh is None else folder / given.mesh,
+        mesh_unit=1.0 if unit is None else UNITS[unit].factor,
+        turn=frozen(np.zeros(3)) if turn is None else turn,
+        place=frozen(np.zeros(3)) if place is None else place,
+        carried_on=carried_on,
         carried=_carried(given, pads["other"], notes),
         materials=_materials(given, notes),
         **pads,
     )
+
+
+def _used(given: BlockTable, notes: Notes) -> str | None:
+    """Return which description of the block is judged, or None with the reason noted."""
+    use = given.use or ("mesh" if given.mesh is not None or given.beam is None else "beam")
+    if getattr(given, use) is not None:
+        return use
+    kinds = ", ".join(word for word in ("shape", "cad") if getattr(given, word) is not None)
+    found = f"names no {use} ({kinds} is not used yet)" if kinds else f"names no {use}"
+    remedy = f"add {use}, or leave [block] out to judge by the faces alone"
+    notes.problem(f"block.{use}", found, "a mesh file" if use == "mesh" else "a [block.beam] table", remedy)
+    return None
 
 
 def _check_pads(face: str, pads: Mapping[str, str], faces: Mapping[str, Face], notes: Notes) -> None:

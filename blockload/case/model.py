@@ -393,10 +393,65 @@ class Carried:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class BlockSpec:
-    """Where the block comes from and how its names meet the car's."""
+class BeamWall:
+    """A wall of a thin-walled section: centre line through points (n, 2) = (y, z), thickness, closed on itself."""
 
-    mesh: Path
+    points: Floats
+    thickness: float
+    closed: bool = False
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class BeamStation:
+    """The section at x, by its walls or else by its properties [m², m⁴, m³], (2,) in the order y, z.
+
+    second_moments are (about y, about z), product ∫yz dA, all at the centroid; fibres (p, 2).
+    """
+
+    name: str
+    x: float
+    walls: Mapping[str, BeamWall]
+    area: float | None = None
+    centroid: Floats | None = None
+    second_moments: Floats | None = None
+    product: float = 0.0
+    torsion_constant: float | None = None
+    shear_areas: Floats | None = None
+    shear_centre: Floats | None = None
+    torsion_modulus: float | None = None
+    fibres: Floats
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class MeasuredStiffness:
+    """What a supplier measured between the faces [N·m/rad], with its source."""
+
+    torsion: float
+    bending_vertical: float
+    bending_lateral: float
+    source: str
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class BeamSpec:
+    """The block as a beam: stations in order of x or measured stiffness, mass of the metal, places (3,) by name."""
+
+    stations: tuple[BeamStation, ...]
+    stiffness: MeasuredStiffness | None
+    mass: float | None
+    places: Mapping[str, Floats]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class BlockSpec:
+    """Where the block comes from and how its names meet the car's.
+
+    `use` says which description is judged; mesh and beam are None where not given, but for the one used.
+    """
+
+    use: str = "mesh"
+    beam: BeamSpec | None = None
+    mesh: Path | None
     mesh_unit: float
     turn: Floats
     place: Floats

@@ -2,6 +2,7 @@
 
 from typing import Any, Literal
 
+from .schema_beam import BeamTable
 from .schema_car import Carrier
 from .tables import Table, Vector, quantity, table, tables, words
 
@@ -141,6 +142,9 @@ class AttachmentsTable(Table):
 class BlockTable(Table):
     """[block]: where the block comes from and how its names meet the car's."""
 
+    use: Literal["mesh", "beam"] | None = words(
+        "which description is judged where several are given; the mesh when absent", example='"mesh"'
+    )
     mesh: str | None = words("mesh file", frame="path", example='"../meshes/block.vtu"')
     mesh_unit: Literal["m", "mm", "cm", "in"] | None = words(
         "unit of the mesh's coordinates", default="m", source="SI", example='"mm"'
@@ -171,7 +175,7 @@ class BlockTable(Table):
     materials: dict[str, MaterialTable] = tables("volume name or pattern = grade, or a table", short="grade")
     attachments: AttachmentsTable | None = table("names of the mesh's face sets by stud")
     shape: Any = words("dimensions of a shape (kept for later use)")
-    beam: Any = words("sections of a beam (kept for later use)")
+    beam: BeamTable | None = table("the block as a beam between its faces; it can rule a block out, never show it")
     cad: str | None = words("STEP file (kept for later use)", frame="path")
 
 

@@ -27,8 +27,9 @@ Vector = Annotated[Floats, GetPydanticSchema(lambda _source, _handler: core_sche
 class Meta:
     """What a field says about itself beyond its type.
 
-    kind: key of `units.KINDS`, or None for words; frame: "place", "vector", "axial", "moments", "x", "y", "yz" or
-    "sign" for what a [frame] converts, "path" for a file; short: the key that a bare text stands for in a table of
+    kind: key of `units.KINDS`, or None for words; frame: "place", "vector", "axial", "moments", "x", "y", "yz",
+    "pair" (magnitudes about or along y and z), "product" (of y and z) or "sign" for what a [frame] converts, "path" for
+    a file; short: the key that a bare text stands for in a table of
     tables; default: text used when absent, with `source`; bound: low, middle and high texts used when absent; band:
     least and greatest plausible value (of every component); example: invented value in TOML for the template; many: a
     list of quantities; share: a percentage may stand instead, read as a `Share`.

@@ -10,7 +10,7 @@ from __future__ import annotations
 import numpy as np
 
 from ..arrays import Floats
-from ..block.model import Attachment, Block
+from ..block.model import AnyBlock, Attachment
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..errors import CaseError, nearest
@@ -30,7 +30,7 @@ def inertia_wrench(cases: LoadCases, case: Case, *, mass: float, cg: Floats, ine
     return np.concatenate([force, moment], axis=-1)
 
 
-def known_wrenches(cases: LoadCases, block: Block, library: Library, case: Case) -> Floats:
+def known_wrenches(cases: LoadCases, block: AnyBlock, library: Library, case: Case) -> Floats:
     """Return the wrenches that do not depend on the installation, (C, S, 6A), in the library's order.
 
     Raises
@@ -56,7 +56,7 @@ def known_wrenches(cases: LoadCases, block: Block, library: Library, case: Case)
     return wrenches
 
 
-def find_attachment(block: Block, name: str | None, what: str) -> Attachment:
+def find_attachment(block: AnyBlock, name: str | None, what: str) -> Attachment:
     """Return the attachment that carries something, one of kind "other" before a pad of the same name.
 
     Raises
@@ -77,8 +77,8 @@ def find_attachment(block: Block, name: str | None, what: str) -> Attachment:
     )
 
 
-def left_out(cases: LoadCases, block: Block, case: Case) -> Floats:
+def left_out(cases: LoadCases, block: AnyBlock, case: Case) -> Floats:
     """Return the largest centripetal acceleration ω²r in the block that the rigid linear field leaves out, (C,)."""
-    radius = np.linalg.norm(block.mesh.p.T - case.bodies["engine"].cg, axis=1).max()
+    radius = np.linalg.norm(block.outline() - case.bodies["engine"].cg, axis=1).max()
     result: Floats = np.asarray(cases.omega_squared) * radius
     return result

@@ -12,7 +12,7 @@ from collections.abc import Mapping
 import numpy as np
 
 from ..arrays import Floats, frozen
-from ..block.model import Block
+from ..block.model import AnyBlock
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..errors import CaseError, nearest
@@ -29,7 +29,7 @@ ORIGIN = np.zeros(3)
 
 def install(
     cases: LoadCases,
-    block: Block,
+    block: AnyBlock,
     library: Library,
     case: Case,
     *,

@@ -10,7 +10,7 @@ import numpy as np
 from scipy.linalg import block_diag
 
 from ..arrays import Floats
-from ..block.model import Attachment, Block
+from ..block.model import AnyBlock, Attachment
 from ..case.model import Case, SecondPath
 from ..errors import CaseError
 from ..response.model import Library
@@ -20,13 +20,13 @@ from .system import Connections
 REACH = 0.05  # m; a path's end farther from every attachment would load the block where it does not
 
 
-def pads(block: Block, case: Case, kind: str) -> tuple[Attachment, ...]:
+def pads(block: AnyBlock, case: Case, kind: str) -> tuple[Attachment, ...]:
     """Return the pads of one face in the order of its studs in the case file."""
     have = {item.name: item for item in block.attachments if item.kind == kind}
     return tuple(have[stud.name] for stud in case.faces[kind].studs if stud.name in have)
 
 
-def connections(block: Block, library: Library, case: Case, *, normal: float, tangential: float) -> Connections:
+def connections(block: AnyBlock, library: Library, case: Case, *, normal: float, tangential: float) -> Connections:
     """Return what joins the block to tub and gearbox for one pad stiffness [N/m]."""
     front, rear = pads(block, case, "front"), pads(block, case, "rear")
     every = (*front, *rear)
@@ -77,7 +77,7 @@ def add_tub(compliance: Floats, tub: Floats, count: int) -> None:
     compliance[np.ix_(forces, forces)] += np.linalg.inv(tub)
 
 
-def path_columns(path: SecondPath, block: Block, library: Library) -> tuple[Floats, Floats]:
+def path_columns(path: SecondPath, block: AnyBlock, library: Library) -> tuple[Floats, Floats]:
     """Return the wrenches unit tension in a path puts on the block's attachments (6A,) and on the gearbox (6,)."""
     line = path.to_at - path.from_at
     length = np.linalg.norm(line)
@@ -98,7 +98,7 @@ def path_columns(path: SecondPath, block: Block, library: Library) -> tuple[Floa
     return on_block, on_gearbox
 
 
-def nearest_attachment(block: Block, at: Floats, where: str) -> Attachment:
+def nearest_attachment(block: AnyBlock, at: Floats, where: str) -> Attachment:
     """Return the attachment whose facets come nearest to a point.
 
     Raises
@@ -107,11 +107,7 @@ def nearest_attachment(block: Block, at: Floats, where: str) -> Attachment:
         Where the nearest is farther away than REACH.
 
     """
-    points, facets = block.mesh.p.T, block.mesh.facets
-    gaps = [
-        float(np.linalg.norm(points[np.unique(facets[:, item.facets])] - at, axis=1).min())
-        for item in block.attachments
-    ]
+    gaps = [float(np.linalg.norm(block.contact(item) - at, axis=1).min()) for item in block.attachments]
     best = int(np.argmin(gaps))
     if gaps[best] > REACH:
         raise CaseError(

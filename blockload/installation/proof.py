@@ -13,7 +13,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..arrays import Floats
-from ..block.model import Block
+from ..block.model import AnyBlock
 from ..car.model import LoadCases
 from ..case.model import Case, SecondPath
 from ..response.model import Library
@@ -33,7 +33,9 @@ class Proof:
     checks: Mapping[str, float]
 
 
-def proofs(weights: Floats, path_force: Floats, cases: LoadCases, block: Block, library: Library, case: Case) -> Proof:
+def proofs(
+    weights: Floats, path_force: Floats, cases: LoadCases, block: AnyBlock, library: Library, case: Case
+) -> Proof:
     """Measure the laws of the module docstring on the solved weights (P, C, S, U)."""
     gaps = {face: _face_gap(weights, path_force, cases, block, library, case, face) for face in ("front", "rear")}
     relief = rigid_acceleration(weights, library)
@@ -65,7 +67,7 @@ def rigid_acceleration(weights: Floats, library: Library) -> Floats:
     return np.concatenate([force / library.mass, about_cg @ np.linalg.inv(library.inertia).T], axis=-1)
 
 
-def face_sum(weights: Floats, block: Block, library: Library, case: Case, face: str, reference: Floats) -> Floats:
+def face_sum(weights: Floats, block: AnyBlock, library: Library, case: Case, face: str, reference: Floats) -> Floats:
     """Return the sum of a face's pad wrenches about a reference point, (..., 6), on the block."""
     total = np.zeros((*weights.shape[:-1], 6))
     for pad in pads(block, case, face):
@@ -80,7 +82,7 @@ def _face_gap(
     weights: Floats,
     path_force: Floats,
     cases: LoadCases,
-    block: Block,
+    block: AnyBlock,
     library: Library,
     case: Case,
     face: str,

@@ -6,7 +6,8 @@ either. A coarse stress counts only if it fails with the spread of its single el
 load case that lifts a wheel cannot rule out, for that is not a state of the car; nor one in a load case whose aero map
 was read beyond its grid.
 `not shown`: a check fails, a band crosses zero, a failing number is not believed, a criterion or base state is
-missing, a guess may govern, or there is no solid block yet. `shown within scope`: none of these.
+missing, a guess may govern, or there is no solid block yet: rigid faces and a beam can rule out, never show.
+`shown within scope`: none of these.
 """
 
 from __future__ import annotations
@@ -15,7 +16,8 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from ..block.model import Block, Material
+from ..block.beam import BeamBlock
+from ..block.model import AnyBlock, Block, Material
 from ..car.model import LoadCases
 from ..case.model import Case, Check, MaterialChoice
 from ..installation.model import PadLoads
@@ -32,7 +34,7 @@ from .wording import INCREMENT
 def judge(
     case: Case,
     cases: LoadCases,
-    block: Block | None,
+    block: AnyBlock | None,
     library: Library | None,
     pads: PadLoads | None,
     *,
@@ -51,7 +53,9 @@ def judge(
 
     """
     checks = (*load_checks(cases), *air_checks(case, cases))
-    if block is not None and library is not None and pads is not None:
+    if isinstance(block, BeamBlock) and library is not None and pads is not None:
+        return _beam(case, cases, block, library, pads, checks=checks)
+    if isinstance(block, Block) and library is not None and pads is not None:
         return _solid(case, cases, block, library, pads, checks=checks)
     margins = (*stud_margins(case, cases), *face_margins(case, cases))
     return Margins(
@@ -89,6 +93,26 @@ def _solid(
         checks=checks,
         verdict=verdict(case, cases, margins, checks, level="solid"),
         surface=surface,
+        stiffness=stiffness,
+        rear_face=rear_face_motion(cases, pads),
+    )
+
+
+def _beam(
+    case: Case, cases: LoadCases, block: BeamBlock, library: Library, pads: PadLoads, *, checks: tuple[Check, ...]
+) -> Margins:
+    from .beam import beam_checks, beam_margins
+    from .stiffness import rear_face_motion, stiffness_margins, stiffnesses
+
+    stiffness = stiffnesses(block, library, case)
+    strength = beam_margins(case, cases, block, library, pads)
+    studs = stud_margins(case, cases, pads=pads, library=library)
+    margins = (*strength, *studs, *face_margins(case, cases), *stiffness_margins(stiffness, case))
+    checks = (*checks, *beam_checks(case, cases, block, library, pads))
+    return Margins(
+        margins=margins,
+        checks=checks,
+        verdict=verdict(case, cases, margins, checks, level="beam"),
         stiffness=stiffness,
         rear_face=rear_face_motion(cases, pads),
     )
@@ -139,6 +163,8 @@ def _doubts(
     if level == "faces":
         doubts.append("no block yet: rigid faces and studs can rule out, never show")
     else:
+        if level == "beam":
+            doubts.append("a beam between rigid faces can rule out, never show: it has no bosses, bores or fillets")
         doubts.append(INCREMENT)
         coarse = [item for item in loaded if item.trust == "coarse"]
         if coarse:

@@ -27,6 +27,11 @@ SOLID_LATER = (
     "opening at a sharp edge or under a pad beyond the idealised load",
     "the centripetal part of the inertia inside the block (its size is in the checks)",
 )
+BEAM_ONLY = (
+    "local stress of the block: a beam has no bosses, bores, bulkheads or fillets; nominal stress at its fibres alone",
+    "faces that bend and walls that warp or breathe: a beam's faces are rigid and its sections keep their shape",
+)
+NO_FIBRES = "stress of the block: its stiffness alone is known"
 _ROUNDING = 1e-9  # of the wheel loads: a push below it is none
 FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
 
@@ -49,6 +54,11 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
         gaps.append("share of the car's twist: no twist_share in [limits]")
     if case.engine_maker_consent != "given":
         gaps.append(f"the engine maker's consent to chassis loads: {case.engine_maker_consent}")
+    if level == "beam":
+        gaps += BEAM_ONLY
+        beam = case.block.beam if case.block is not None else None
+        if beam is not None and not any(item.walls or len(item.fibres) for item in beam.stations):
+            gaps.append(NO_FIBRES)
     scope = FACES_ONLY if level == "faces" else SOLID_LATER
     return (*gaps, *scope, *ALWAYS)
 

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..arrays import Floats, Ints, frozen
-from ..block.model import Block
+from ..block.model import AnyBlock, Block
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..installation.model import PadLoads
@@ -21,7 +21,7 @@ from .hotspots import peaks_apart
 from .model import Margin, SurfaceMargins
 from .places import Atlas, atlas, place_name
 from .strength import CRITERIA, Criterion, Peaks, allowables, peaks, shares
-from .trust import State, Zones, trust_of, zones
+from .trust import State, Trust, Zones, trust_of, zones
 from .wording import INCREMENT, causes, margin_at
 
 EVERYWHERE, CLEAR = 6, 6  # hotspots per criterion: highest of all, and highest outside the zones of doubt
@@ -65,10 +65,10 @@ def strength_margins(
         for field in fields
         for entry in hot_entries(field, ground)
     ]
-    return tuple(margins), _surface(fields, pads.middle)
+    return tuple(margins), surface_margins(fields, pads.middle)
 
 
-def strength_fields(case: Case, block: Block, library: Library, pads: PadLoads) -> tuple[Field, ...]:
+def strength_fields(case: Case, block: AnyBlock, library: Library, pads: PadLoads) -> tuple[Field, ...]:
     """Return every criterion over every surface entry, all cases and stiffnesses."""
     found = peaks(library.stress, pads.weights.sum(axis=2))
     result = []
@@ -96,8 +96,26 @@ def hot_entries(field: Field, ground: Ground) -> Ints:
 
 def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads: PadLoads) -> Margin:
     library = ground.library
-    ratio = field.ratio[entry]
-    variant = int(ratio.argmax())
+    variant = int(field.ratio[entry].argmax())
+    state = pads.weights[variant, field.peaks.case[entry, variant]].sum(axis=0)
+    known = State(criterion=field.criterion, weights=state, applied=float(field.peaks.worst[entry, variant]))
+    at = library.surface_points[library.entry_node[entry]]
+    return stress_margin(
+        field,
+        entry,
+        library,
+        cases=cases,
+        pads=pads,
+        place=place_name(ground.where, at, library.volumes[library.entry_volume[entry]]),
+        trust=trust_of(ground.where, ground.marked, ground.block, library, entry, known),
+    )
+
+
+def stress_margin(
+    field: Field, entry: int, library: Library, *, cases: LoadCases, pads: PadLoads, place: str, trust: Trust
+) -> Margin:
+    """Return one criterion at one surface entry: worst load case at the worst pad stiffness, the band over all."""
+    variant = int(field.ratio[entry].argmax())
     case_index = int(field.peaks.case[entry, variant])
     applied = float(field.peaks.worst[entry, variant])
     strength, factor = float(field.strength[entry]), float(field.factor[entry])
@@ -105,8 +123,6 @@ def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads:
     state = pads.weights[variant, case_index]
     at = library.surface_points[library.entry_node[entry]]
     split = shares(field.criterion, np.asarray(library.stress[entry]).dot(state.T).T)
-    known = State(criterion=field.criterion, weights=state.sum(axis=0), applied=applied)
-    trust = trust_of(ground.where, ground.marked, ground.block, library, entry, known)
     second = None
     if len(cases.names) > 1:
         value = float(field.peaks.second[entry, variant])
@@ -115,7 +131,7 @@ def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads:
             second = (name, margin_at(strength, factor, value))
     return Margin(
         criterion=field.criterion.name,
-        place=place_name(ground.where, at, library.volumes[library.entry_volume[entry]]),
+        place=place,
         at=(float(at[0]), float(at[1]), float(at[2])),
         load_case=cases.names[case_index],
         applied=applied,
@@ -133,8 +149,8 @@ def _margin(field: Field, entry: int, ground: Ground, *, cases: LoadCases, pads:
     )
 
 
-def _surface(fields: Sequence[Field], middle: int) -> SurfaceMargins:
-    """Worst criterion of every entry at the middle stiffness."""
+def surface_margins(fields: Sequence[Field], middle: int) -> SurfaceMargins:
+    """Return the worst criterion of every entry at the middle stiffness."""
     ratios = np.stack([field.ratio[:, middle] for field in fields], axis=1)
     worst = ratios.argmax(axis=1)
     rows = np.arange(len(ratios))

@@ -10,7 +10,7 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from ..block.model import Block
+from ..block.model import AnyBlock, Block
 from ..car.model import LoadCases
 from ..case.model import Case, Check
 from ..installation.model import PadLoads
@@ -37,16 +37,23 @@ LIBRARY_CHECKS = {
 
 def solid_checks(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
     """Yield the checks of library, installation and field."""
-    for name, value in library.checks.items():
-        text, limit = LIBRARY_CHECKS.get(name, (name, FIELD))
-        yield below(text, value, limit)
+    yield from installed_checks(case, cases, block, library, pads)
     yield below(
         "flexibility is the average motion of the attachments", flexibility_gap(block, library), FIELD, "recomputed"
     )
+    yield _cut(cases, block, library, pads)
+
+
+def installed_checks(
+    case: Case, cases: LoadCases, block: AnyBlock, library: Library, pads: PadLoads
+) -> Iterator[Check]:
+    """Yield the checks of library and installation, which hold for any block."""
+    for name, value in library.checks.items():
+        text, limit = LIBRARY_CHECKS.get(name, (name, FIELD))
+        yield below(text, value, limit)
     yield from _installed(case, cases, block, library, pads)
     yield _left_out(cases, pads)
     yield from _metal(case, block, pads)
-    yield _cut(cases, block, library, pads)
 
 
 def flexibility_gap(block: Block, library: Library) -> float:
@@ -64,7 +71,7 @@ def flexibility_gap(block: Block, library: Library) -> float:
     return worst
 
 
-def _installed(case: Case, cases: LoadCases, block: Block, library: Library, pads: PadLoads) -> Iterator[Check]:
+def _installed(case: Case, cases: LoadCases, block: AnyBlock, library: Library, pads: PadLoads) -> Iterator[Check]:
     yield below("installed system solved: residual", pads.checks["residual"], IDENTITY)
     for face in ("front", "rear"):
         loads = cases.faces[face]
@@ -91,7 +98,7 @@ def _left_out(cases: LoadCases, pads: PadLoads) -> Check:
     return below("centripetal acceleration left out inside the block is small", share, LEFT_OUT, note)
 
 
-def _metal(case: Case, block: Block, pads: PadLoads) -> Iterator[Check]:
+def _metal(case: Case, block: AnyBlock, pads: PadLoads) -> Iterator[Check]:
     for name in ("mass", "cg", "inertia"):
         yield below(f"mesh {name} as the library was solved with", pads.checks[name], IDENTITY)
     engine = case.bodies["engine"]

@@ -13,7 +13,7 @@ from collections.abc import Mapping
 import numpy as np
 
 from ..arrays import Floats
-from ..block.model import Attachment, Block
+from ..block.model import AnyBlock, Attachment
 from ..car.model import LoadCases
 from ..case.model import Case
 from ..installation.compliance import pad_stiffness, stiffness_variants
@@ -27,7 +27,7 @@ MODES = ("torsion", "bending_vertical", "bending_lateral")
 UNIT = "_Nm_per_rad"
 
 
-def face_to_face(block: Block, library: Library, case: Case, pads: tuple[float, float] | None = None) -> Floats:
+def face_to_face(block: AnyBlock, library: Library, case: Case, pads: tuple[float, float] | None = None) -> Floats:
     """Return torsional, vertical and lateral bending stiffness between the faces, (3,) [N·m/rad].
 
     Parameters
@@ -53,7 +53,9 @@ def face_to_face(block: Block, library: Library, case: Case, pads: tuple[float, 
     return result
 
 
-def _planes(block: Block, library: Library, case: Case, stiffness: tuple[float, float] | None) -> Connections:
+def _planes(block: AnyBlock, library: Library, case: Case, stiffness: tuple[float, float] | None) -> Connections:
+    if stiffness is None and block.rigid_faces:
+        return _rigid_planes(block, library, case)
     every = (*pads_of(block, case, "front"), *pads_of(block, case, "rear"))
     modes = library.rigid_modes()
     on_block = np.zeros((modes.shape[0], 3 * len(every)))
@@ -71,11 +73,26 @@ def _planes(block: Block, library: Library, case: Case, stiffness: tuple[float, 
     return Connections(on_block=on_block, on_gearbox=on_gearbox, compliance=compliance, holding=holding)
 
 
+def _rigid_planes(block: AnyBlock, library: Library, case: Case) -> Connections:
+    """Planes on faces that are rigid already: one pad of each carries everything, all others would say the same."""
+    modes = library.rigid_modes()
+    on_block = np.zeros((modes.shape[0], 12))
+    on_gearbox = np.zeros((6, 12))
+    for columns, kind in ((slice(0, 6), "front"), (slice(6, 12), "rear")):
+        rows = library.rows(kind, pads_of(block, case, kind)[0].name)
+        on_block[rows, columns] = np.eye(6)
+        if kind == "rear":
+            on_gearbox[:, columns] = -modes[rows].T
+    return Connections(
+        on_block=on_block, on_gearbox=on_gearbox, compliance=np.zeros((12, 12)), holding=np.ones(12, dtype=bool)
+    )
+
+
 def _translation(pad: Attachment, normal: float, tangential: float) -> Floats:
     return np.asarray(np.linalg.inv(pad_stiffness(pad, normal, tangential)[:3, :3]), dtype=np.float64)
 
 
-def stiffnesses(block: Block, library: Library, case: Case) -> dict[str, float]:
+def stiffnesses(block: AnyBlock, library: Library, case: Case) -> dict[str, float]:
     """Return the block's stiffnesses alone and with every pad stiffness, keys ending in the SI unit."""
     found = {name + UNIT: value for name, value in _named(face_to_face(block, library, case))}
     for label, normal, tangential in stiffness_variants(case.installation):

@@ -24,7 +24,7 @@ from .files import write_beside
 from .suspension_results import links_written, tension_force, tension_line
 
 if TYPE_CHECKING:
-    from ..block.model import Block
+    from ..block.model import AnyBlock
     from ..installation.model import PadLoads
     from ..margins.model import Margins
     from ..response.model import Library
@@ -52,7 +52,7 @@ def load_results(case: Case, cases: LoadCases, *, run_id: str = "loads", version
 def results(
     case: Case,
     cases: LoadCases,
-    block: Block | None,
+    block: AnyBlock | None,
     library: Library | None,
     pads: PadLoads | None,
     margins: Margins,
@@ -79,8 +79,8 @@ def results(
     if block is not None:
         data["inputs"]["mesh_sha256"] = block.sha256
         data["block"] = {
-            "nodes": int(block.mesh.doflocs.shape[1]),
-            "elements": int(block.mesh.t.shape[1]),
+            "nodes": block.counts[0],
+            "elements": block.counts[1],
             "mass": block.mass,
             "cg": list(block.cg),
             "volumes": list(block.volumes),

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Protocol
 
 if TYPE_CHECKING:
-    from ..block.model import Block
+    from ..block.model import AnyBlock
     from ..car.lap_model import LapLoads
     from ..car.model import LoadCases
     from ..case.model import Case
@@ -33,7 +33,7 @@ class RunLike(Protocol):
         ...
 
     @property
-    def block(self) -> Block | None:
+    def block(self) -> AnyBlock | None:
         """The block, or None."""
         ...
 

@@ -25,6 +25,7 @@ from .run import RunLike
 from .surface import Surface, surface, write_fields
 
 _TABLES = (".csv", ".npy")
+NO_SURFACE = f"{MISSING}: a beam has no surface to draw."
 SWITCHED_OFF = f"{MISSING}: they were switched off for this run."
 
 
@@ -100,7 +101,7 @@ def _block(folder: Path, run: RunLike, *, pictures: bool) -> Pictures | None:
     """Write the surface fields and draw the block, where there is one."""
     seen = _surface(run)
     if seen is None:
-        return None
+        return None if run.block is None else Pictures(missing=NO_SURFACE)
     write_fields(folder / "fields.vtu", seen, run_id=run.run_id)
     return draw(seen, run.margins) if pictures else Pictures(missing=SWITCHED_OFF)
 
