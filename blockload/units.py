@@ -1,151 +1,22 @@
 """The quantity grammar of the case file: one number, or a bracket of numbers, then a unit.
 
 The grammar is our own and strict, because a units library reads "26,5 kN" as 265 kN without a word. Only the
-unit text is looked up: first in the short table below, then, for anything rarer, in pint (imported on first need).
-Inside blockload everything is SI; angles count as a dimension here, so that kN·m is no torsional stiffness.
+unit text is looked up: first in the table of `unit_table`, then, for anything rarer, in pint (imported on first need).
 """
 
 from __future__ import annotations
 
 import math
 import re
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from collections.abc import Sequence
 from functools import cache
-from types import MappingProxyType
 from typing import Any, NoReturn
 
 import numpy as np
 
 from .arrays import Floats, frozen
 from .errors import CaseError, nearest
-
-STANDARD_GRAVITY = 9.80665
-"""Standard acceleration of free fall [m/s²] (3rd CGPM, 1901; ISO 80000-3)."""
-
-Dimension = tuple[int, int, int, int, int]
-"""Exponents of kg, m, s, K and rad."""
-
-
-@dataclass(frozen=True, slots=True)
-class Unit:
-    """SI value = factor · number + offset."""
-
-    factor: float
-    dimension: Dimension
-    offset: float = 0.0
-
-
-@dataclass(frozen=True, slots=True)
-class Kind:
-    """What a field holds: its dimension, how many numbers, the SI unit and usual units for messages."""
-
-    name: str
-    dimension: Dimension
-    size: int
-    si: str
-    usual: tuple[str, ...]
-
-
-_INCH, _FOOT, _POUND = 0.0254, 0.3048, 0.45359237
-_LBF = _POUND * STANDARD_GRAVITY
-_DEGREE = math.pi / 180.0
-_NONE: Dimension = (0, 0, 0, 0, 0)
-_FORCE: Dimension = (1, 1, -2, 0, 0)
-_MOMENT: Dimension = (1, 2, -2, 0, 0)
-_TORSIONAL: Dimension = (1, 2, -2, 0, -1)
-_STIFFNESS: Dimension = (1, 0, -2, 0, 0)
-_PRESSURE: Dimension = (1, -1, -2, 0, 0)
-
-_DIMENSIONS: Mapping[str, tuple[Dimension, str, Mapping[str, float]]] = {
-    "length": ((0, 1, 0, 0, 0), "m", {"m": 1, "mm": 1e-3, "cm": 1e-2, "um": 1e-6, "km": 1e3, "in": _INCH, "ft": _FOOT}),
-    "area": ((0, 2, 0, 0, 0), "m^2", {"m^2": 1, "mm^2": 1e-6, "cm^2": 1e-4, "in^2": _INCH**2, "ft^2": _FOOT**2}),
-    "mass": ((1, 0, 0, 0, 0), "kg", {"kg": 1, "t": 1e3, "lb": _POUND}),
-    "inertia": ((1, 2, 0, 0, 0), "kg*m^2", {"kg*m^2": 1, "kg*mm^2": 1e-6, "kg*cm^2": 1e-4}),
-    "second_moment": ((0, 4, 0, 0, 0), "m^4", {"m^4": 1, "mm^4": 1e-12, "cm^4": 1e-8, "in^4": _INCH**4}),
-    "section_modulus": ((0, 3, 0, 0, 0), "m^3", {"m^3": 1, "mm^3": 1e-9, "cm^3": 1e-6, "in^3": _INCH**3}),
-    "density": ((1, -3, 0, 0, 0), "kg/m^3", {"kg/m^3": 1, "g/cm^3": 1e3, "kg/dm^3": 1e3, "t/m^3": 1e3}),
-    "force": (_FORCE, "N", {"N": 1, "kN": 1e3, "MN": 1e6, "lbf": _LBF}),
-    "moment": (
-        _MOMENT,
-        "N*m",
-        {
-            "N*m": 1,
-            "kN*m": 1e3,
-            "MN*m": 1e6,
-            "N*mm": 1e-3,
-            "kN*mm": 1.0,
-            "lbf*ft": _LBF * _FOOT,
-            "lbf*in": _LBF * _INCH,
-        },
-    ),
-    "torsional_stiffness": (
-        _TORSIONAL,
-        "N*m/rad",
-        {
-            "N*m/rad": 1,
-            "kN*m/rad": 1e3,
-            "MN*m/rad": 1e6,
-            "N*m/deg": 1 / _DEGREE,
-            "kN*m/deg": 1e3 / _DEGREE,
-            "lbf*ft/deg": _LBF * _FOOT / _DEGREE,
-        },
-    ),
-    "stiffness": (
-        _STIFFNESS,
-        "N/m",
-        {"N/m": 1, "kN/m": 1e3, "N/mm": 1e3, "kN/mm": 1e6, "MN/m": 1e6, "N/um": 1e6, "lbf/in": _LBF / _INCH},
-    ),
-    "pressure": (
-        _PRESSURE,
-        "Pa",
-        {"Pa": 1, "kPa": 1e3, "MPa": 1e6, "GPa": 1e9, "bar": 1e5, "N/mm^2": 1e6, "psi": _LBF / _INCH**2},
-    ),
-    "speed": (
-        (0, 1, -1, 0, 0),
-        "m/s",
-        {"m/s": 1, "km/h": 1 / 3.6, "mm/s": 1e-3, "mph": 1609.344 / 3600.0, "ft/s": _FOOT},
-    ),
-    "acceleration": ((0, 1, -2, 0, 0), "m/s^2", {"m/s^2": 1, "mm/s^2": 1e-3, "ft/s^2": _FOOT}),
-    "angle": ((0, 0, 0, 0, 1), "rad", {"rad": 1, "deg": _DEGREE, "mrad": 1e-3}),
-    "angular_speed": ((0, 0, -1, 0, 1), "rad/s", {"rad/s": 1, "deg/s": _DEGREE, "rpm": math.pi / 30.0}),
-    "angular_acceleration": (
-        (0, 0, -2, 0, 1),
-        "rad/s^2",
-        {"rad/s^2": 1, "deg/s^2": _DEGREE, "rpm/s": math.pi / 30.0},
-    ),
-    "power": ((1, 2, -3, 0, 0), "W", {"W": 1, "kW": 1e3}),
-    "time": ((0, 0, 1, 0, 0), "s", {"s": 1, "ms": 1e-3, "min": 60, "h": 3600}),
-    "temperature": ((0, 0, 0, 1, 0), "K", {"K": 1, "degC": 1, "degF": 5 / 9}),
-    "thermal_expansion": ((0, 0, 0, -1, 0), "1/K", {"1/K": 1, "um/m/K": 1e-6}),
-    "per_force": ((-1, -1, 2, 0, 0), "1/N", {"1/N": 1, "1/kN": 1e-3}),
-    "ratio": (_NONE, "", {"": 1, "%": 1e-2, "1": 1}),
-}
-_OFFSETS = {"degC": 273.15, "degF": 459.67 * 5 / 9}
-
-UNITS: Mapping[str, Unit] = MappingProxyType(
-    {
-        text: Unit(float(factor), dimension, _OFFSETS.get(text, 0.0))
-        for dimension, _, units in _DIMENSIONS.values()
-        for text, factor in units.items()
-    }
-)
-"""Usual units by their canonical text; a test compares every entry to pint."""
-
-
-def _kinds() -> dict[str, Kind]:
-    kinds: dict[str, Kind] = {}
-    for name, (dimension, si, units) in _DIMENSIONS.items():
-        usual = tuple(text for text in units if text)
-        if name == "acceleration":
-            usual = (*usual, "g")
-        for suffix, size in (("", 1), ("_pair", 2), ("_vector", 3)):
-            kinds[name + suffix] = Kind(name + suffix, dimension, size, si, usual)
-    return kinds
-
-
-KINDS: Mapping[str, Kind] = MappingProxyType(_kinds())
-"""Every kind of field: a dimension's name, with "_pair" for two numbers and "_vector" for three."""
+from .unit_table import DIMENSIONS, KINDS, NONE, STANDARD_GRAVITY, UNITS, Dimension, Kind, Unit
 
 _NUMBER = r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?"
 _ONE = re.compile(rf"\s*({_NUMBER})\s*(.*?)\s*", re.DOTALL)
@@ -225,7 +96,7 @@ def _bare(value: float) -> float:
 def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
     name = canonical(text)
     if re.search(r"(?<![A-Za-z])g(?![A-Za-z])", name) and name != "g/cm^3":
-        if kind.dimension == _DIMENSIONS["acceleration"][0] and name == "g":
+        if kind.dimension == DIMENSIONS["acceleration"][0] and name == "g":
             return Unit(STANDARD_GRAVITY, kind.dimension)
         remedy = "g is standard gravity and belongs to accelerations; write a mass of 500 grams as '0.5 kg'"
         raise CaseError(where, f"{value!r} uses g", _form(kind), remedy)
@@ -234,7 +105,7 @@ def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
         if not _UNIT_TEXT.fullmatch(name) and re.search(r"[\d,;.+()]", name):
             _refuse(value, kind, where)
         unit = _rare_unit(name)
-    if not name and kind.dimension != _NONE:
+    if not name and kind.dimension != NONE:
         remedy = f"write '{value.strip()} {kind.si}', or the bare number for SI"
         raise CaseError(where, f"{value!r} has no unit", _form(kind), remedy)
     if unit is None:
@@ -328,7 +199,7 @@ def _refuse_list(value: Sequence[Any], kind: Kind, where: str) -> NoReturn:
 
 def _form(kind: Kind) -> str:
     units = ", ".join(kind.usual)
-    bare = "a bare number" if kind.dimension == _NONE else f"a bare SI number ({kind.si})"
+    bare = "a bare number" if kind.dimension == NONE else f"a bare SI number ({kind.si})"
     if kind.size > 1:
         bare = f"a list of {_count(kind.size)} in {kind.si}"
     return f"{_article(kind.name)}: '{_example(kind)}' or {bare}" + (f"; units: {units}" if units else "")
@@ -345,7 +216,7 @@ def _article(name: str) -> str:
 
 
 def _what(dimension: Dimension) -> str:
-    names = [name for name, (known, _, _) in _DIMENSIONS.items() if known == dimension]
+    names = [name for name, (known, _, _) in DIMENSIONS.items() if known == dimension]
     return " or ".join(_article(name) for name in names) if names else "another dimension"
 
 

@@ -14,7 +14,7 @@ import blockload
 
 ROOT = Path(__file__).parent.parent
 PACKAGE = ROOT / "blockload"
-LEAVES = ("errors", "arrays", "units")
+LEAVES = ("errors", "arrays", "unit_table", "units")
 ROOMS = ("case", "car", "block", "response", "installation", "margins", "report", "window", "variants")
 MESHING = {"skfem", "meshio", "pyvista", "netgen", "ngsolve"}
 SOURCES = sorted(PACKAGE.rglob("*.py"))

@@ -17,7 +17,8 @@ import numpy as np
 
 from ..arrays import Floats, Ints
 from ..errors import CaseError, nearest
-from ..units import UNITS, canonical, parse
+from ..unit_table import UNITS
+from ..units import canonical, parse
 from .aero_grid import lay_out, turned
 from .aero_words import (
     ANY,

@@ -9,7 +9,8 @@ from typing import Any
 import numpy as np
 
 from ..arrays import Floats, frozen
-from ..units import UNITS, significant
+from ..unit_table import UNITS
+from ..units import significant
 from .build_beam import build_beam
 from .fasteners import boss_stiffness
 from .messages import nearest_key

@@ -18,7 +18,8 @@ import numpy as np
 
 from ..arrays import Floats, frozen
 from ..errors import CaseError, nearest
-from ..units import STANDARD_GRAVITY, parse
+from ..unit_table import STANDARD_GRAVITY
+from ..units import parse
 from .csv_text import Page, read_page
 from .frame import rotation_of
 from .model import CORNERS, LapHistory, LapSpec

@@ -9,7 +9,7 @@ import textwrap
 from collections.abc import Iterator
 from typing import Any
 
-from ..units import KINDS
+from ..unit_table import KINDS
 from .documents import join_key
 from .tables import Meta, Table, fields, inner, words_of
 

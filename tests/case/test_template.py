@@ -13,7 +13,8 @@ from case_texts import read_text
 from blockload.case.schema import CaseTable
 from blockload.case.tables import Table, fields, inner
 from blockload.case.template import template
-from blockload.units import KINDS, parse
+from blockload.unit_table import KINDS
+from blockload.units import parse
 
 TEXT = template()
 

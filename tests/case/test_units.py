@@ -13,7 +13,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from blockload.errors import CaseError
-from blockload.units import KINDS, UNITS, canonical, exact, parse, show, significant
+from blockload.unit_table import KINDS, UNITS
+from blockload.units import canonical, exact, parse, show, significant
 
 REGISTRY = pint.UnitRegistry()
 FINITE = st.floats(min_value=-1e12, max_value=1e12, allow_nan=False)
