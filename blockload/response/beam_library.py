@@ -130,7 +130,7 @@ def _library(
     heat = growth * (points - block.cg)
     stress = block.recovery @ _forces(chain, motion, acceleration)[:, :, None]
     full = np.zeros((len(points), 6, motion.shape[1] + 1))
-    full[:, [0, 3, 5], :-1] = stress.reshape(len(points), 3, -1)
+    full[:, [0, 3, 5], :-1] = stress.reshape(len(points), 3, motion.shape[1])
     count = np.arange(len(points))
     return Library(
         key="beam",
@@ -164,4 +164,4 @@ def _fibres(block: BeamBlock, motion: Floats) -> tuple[Floats, Floats]:
     arm = np.column_stack([np.zeros(len(node)), block.fibres.reshape(-1, 2)])
     points = arm + np.column_stack([block.x[node], np.zeros((len(node), 2))])
     moved = rigid_arm(arm)[:, :3] @ motion.reshape(len(block.x), 6, -1)[node]
-    return points, moved.reshape(3 * len(node), -1)
+    return points, moved.reshape(3 * len(node), motion.shape[1])
