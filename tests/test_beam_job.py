@@ -10,9 +10,8 @@ import pytest
 from blockload import pipeline
 from blockload.block import beam
 from blockload.block.beam import BeamBlock
-from blockload.case.model import CORNERS
 from blockload.case.reading import read
-from blockload.errors import BlockError
+from blockload.errors import BlockError, CaseError
 from blockload.margins.judging import rules_out
 from blockload.report.console import summary
 from blockload.report.results import results
@@ -140,12 +139,21 @@ def test_bent_walls_carry_the_wrench_of_the_section(tmp_path: Path) -> None:
     np.testing.assert_allclose(force, expected[:, :3], atol=2e-3 * np.abs(expected).max())
 
 
-def test_a_place_beside_the_beam_carries_its_mass_as_statics_says(run: pipeline.Run) -> None:
+def test_pads_carry_what_statics_says(run: pipeline.Run) -> None:
     """Pads of both faces, weight and inertia of metal and carried masses are in balance in every case."""
     assert run.pads is not None
     assert run.pads.sum_gap < 1e-9
     assert run.pads.relief_gap < 1e-9
-    assert len(CORNERS) == 4
+
+
+def test_pads_are_as_large_as_the_washers(run: pipeline.Run) -> None:
+    """M12: 24 mm outside, 13 mm inside (ISO 7089, from memory); said among the defaults."""
+    assert run.block is not None
+    pad = run.block.attachment("TL", "front")
+
+    assert pad.area == pytest.approx(np.pi / 4 * (0.024**2 - 0.013**2))
+    np.testing.assert_allclose(np.diag(pad.moments)[1:], np.pi / 64 * (0.024**4 - 0.013**4))
+    assert any("pads" in item.key for item in run.case.defaults)
 
 
 def test_report_results_and_console_stand(run: pipeline.Run, tmp_path: Path) -> None:
@@ -156,19 +164,34 @@ def test_report_results_and_console_stand(run: pipeline.Run, tmp_path: Path) -> 
     assert "a beam has no surface to draw" in page
     assert "beam: a beam between the faces" in page
     assert data["block"]["elements"] == len(run.block.x) - 1  # type: ignore[union-attr]
+    assert data["inputs"]["mesh_sha256"] is None
     assert not (tmp_path / "fields.vtu").exists()
     assert summary(run.case, run.cases, run.margins)
 
 
+STRUT = """
+[paths.strut]
+from = {{ body = "engine", at = "({x}, 0, 0.20) m" }}
+to = {{ body = "tub", at = "(-1.3, 0.3, 0.5) m" }}
+stiffness = "20 kN/mm"
+"""
+
+
 def test_a_second_path_enters_at_the_nearest_attachment(tmp_path: Path) -> None:
-    """A strut on the engine takes the place near it; one far from every attachment is refused."""
-    text = DEMO.read_text(encoding="utf-8").replace('extends = "demo.toml"', f'extends = "{DEMO.parent / "demo.toml"}"')
-    near = "[paths.strut]\nfrom = { body = 'engine', at = '(-1.81, 0, 0.20) m' }\n"
-    near += "to = { body = 'tub', at = '(-1.3, 0.3, 0.5) m' }\nstiffness = '20 kN/mm'\n"
-    (tmp_path / "near.toml").write_text(text + near, encoding="utf-8")
-    overrides = ["installation.second_paths=some"]
-    with pytest.raises(Exception, match="no such statement"):
-        pipeline.check(tmp_path / "near.toml", overrides)
+    """A strut on the engine takes the place it is at; one far from every attachment is refused."""
+    base = (DEMO.parent / "demo.toml").read_text(encoding="utf-8").replace('second_paths = "none"\n', "")
+    (tmp_path / "demo.toml").write_text(base, encoding="utf-8")
+    beam_text = DEMO.read_text(encoding="utf-8")
+    path = tmp_path / "case.toml"
+    path.write_text(beam_text + STRUT.format(x=-1.81), encoding="utf-8")
+    run = pipeline.check(path)
+
+    assert run.pads is not None
+    assert np.abs(run.pads.path_force).max() > 1.0
+    assert [item.name for item in run.margins.checks if not item.ok] == []
+    path.write_text(beam_text + STRUT.format(x=-1.65), encoding="utf-8")
+    with pytest.raises(CaseError, match="from the nearest attachment"):
+        pipeline.check(path)
 
 
 def test_pieces_are_fine_enough(monkeypatch: pytest.MonkeyPatch) -> None:

@@ -8,8 +8,6 @@ make a beam stiffer than a block, walls that breathe or warp make it softer: it 
 
 from __future__ import annotations
 
-import hashlib
-import json
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from itertools import pairwise
@@ -17,14 +15,14 @@ from types import MappingProxyType
 
 import numpy as np
 
-from ..arrays import Floats, Ints, frozen
-from ..case.model import FACES, BeamSpec, BeamStation, BlockSpec, Case, Face
+from ..arrays import Floats, frozen
+from ..case.model import FACES, BeamSpec, BeamStation, Case, Face
 from ..errors import BlockError
-from .attachments import WASHERS
+from .beam_pads import beam_attachments, walls_of
 from .model import AnyBlock, Attachment, Material
 from .moments import MassProperties
 from .sections import Section, given_section, mass_per_length, section_stiffness
-from .thin_walls import Wall, between, thin_walled
+from .thin_walls import between, thin_walled
 from .volumes import assign
 
 VOLUME = "beam"
@@ -32,8 +30,6 @@ PIECES = 48
 """Pieces between the faces; the error falls with their square, and halving them moves the demo beam by 2e-3."""
 _APART = 1e-3
 """Nodes nearer than this to that of an attachment make way for it [m]."""
-BARE_PAD = (2.0, 1.1)
-"""Outer and inner diameter of a pad over the thread's, where no washer is known (our choice)."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -88,7 +84,7 @@ def build_beam(case: Case) -> BeamBlock:
         fibres, recovery = np.zeros((len(x) - 1, 2, 0, 2)), np.zeros((len(x) - 1, 2, 0, 3, 6))
     else:
         x, elastic, per_length, fibres, recovery = _sectioned(beam, faces, material)
-    metal = _weighed(x, per_length)
+    metal = weighed(x, per_length)
     return BeamBlock(
         x=frozen(x),
         elastic=frozen(elastic),
@@ -97,8 +93,8 @@ def build_beam(case: Case) -> BeamBlock:
         recovery=frozen(recovery),
         volumes=(VOLUME,),
         materials=MappingProxyType({VOLUME: material}),
-        attachments=tuple(_attachments(spec, beam, faces)),
-        sha256=_digest(case),
+        attachments=tuple(beam_attachments(spec, beam, faces)),
+        sha256="",
         mass=metal.mass,
         cg=metal.cg,
         inertia=metal.inertia,
@@ -159,7 +155,7 @@ def _bays(
 def _section(first: BeamStation, last: BeamStation, x: float, material: Material) -> Section:
     share = 0.0 if last.x == first.x else (x - first.x) / (last.x - first.x)
     if first.walls:
-        walls = between(_walls(first), _walls(last), share)
+        walls = between(walls_of(first), walls_of(last), share)
         return thin_walled(walls, f"block.beam.stations.{first.name}.walls")
 
     def mixed(name: str) -> Floats:
@@ -178,13 +174,6 @@ def _section(first: BeamStation, last: BeamStation, x: float, material: Material
         fibres=mixed("fibres"),
         torsion_modulus=None if first.torsion_modulus is None else float(mixed("torsion_modulus")),
     )
-
-
-def _walls(station: BeamStation) -> dict[str, Wall]:
-    return {
-        name: Wall(points=wall.points, thickness=wall.thickness, closed=wall.closed)
-        for name, wall in station.walls.items()
-    }
 
 
 def _property(station: BeamStation, name: str, material: Material) -> object:
@@ -230,8 +219,8 @@ def _measured(beam: BeamSpec, faces: Mapping[str, Face]) -> tuple[Floats, Floats
     return x, np.tile(elastic, (len(x) - 1, 1, 1)), np.tile(weight, (len(x) - 1, 1, 1))
 
 
-def _weighed(x: Floats, per_length: Floats) -> MassProperties:
-    """Mass properties of the pieces: each its slice's, plus that of its own length along x."""
+def weighed(x: Floats, per_length: Floats) -> MassProperties:
+    """Return the mass properties of the pieces: each its slice's, plus that of its own length along x."""
     length, middle = np.diff(x), (x[1:] + x[:-1]) / 2
     slices = length[:, None, None] * per_length
     each = slices[:, 0, 0]
@@ -247,60 +236,3 @@ def _weighed(x: Floats, per_length: Floats) -> MassProperties:
     about_origin[1:, 0] -= mixed
     inertia = about_origin - mass * (cg @ cg * np.eye(3) - np.outer(cg, cg))
     return MassProperties(mass=mass, cg=frozen(cg), inertia=frozen(inertia))
-
-
-def _attachments(spec: BlockSpec, beam: BeamSpec, faces: Mapping[str, Face]) -> Iterator[Attachment]:
-    """Yield pads at the studs of both faces, then the places in file order."""
-    for kind, normal in (("front", 1.0), ("rear", -1.0)):
-        face = faces[kind]
-        for stud in face.studs:
-            outer, inner = pad_ring(stud.size)
-            area = np.pi / 4 * (outer**2 - inner**2)
-            moment = np.pi / 64 * (outer**4 - inner**4)
-            yield _point(stud.name, kind, [face.x, *stud.at], normal=normal, area=area, moment=moment)
-    places = dict(beam.places)
-    if spec.carried_on not in places:
-        places[spec.carried_on] = _middle(beam, faces)
-    for name, at in places.items():
-        yield _point(name, "other", at)
-
-
-def _point(
-    name: str, kind: str, at: object, *, normal: float = 0.0, area: float = 0.0, moment: float = 0.0
-) -> Attachment:
-    none: Ints = np.zeros(0, dtype=np.int64)
-    return Attachment(
-        name=name,
-        kind=kind,
-        sets=(),
-        facets=frozen(none, np.int64),
-        area=area,
-        centroid=frozen(at),  # type: ignore[arg-type]
-        normal=frozen([normal, 0.0, 0.0]),
-        moments=frozen(np.diag([0.0, moment, moment])),
-    )
-
-
-def _middle(beam: BeamSpec, faces: Mapping[str, Face]) -> Floats:
-    """Half-way between the faces, at the centroid of the nearest station or of the studs."""
-    x = (faces["front"].x + faces["rear"].x) / 2
-    if beam.stations:
-        near = min(beam.stations, key=lambda item: abs(item.x - x))
-        centroid = near.centroid if near.centroid is not None else thin_walled(_walls(near)).centroid
-    else:
-        centroid = np.mean([np.mean([stud.at for stud in faces[name].studs], axis=0) for name in FACES], axis=0)
-    return np.array([x, *centroid])
-
-
-def pad_ring(size: str) -> tuple[float, float]:
-    """Return outer and inner diameter [m] of a pad: the plain washer's of the thread, else BARE_PAD of it."""
-    digits = size.upper().lstrip("M").split("X")[0].strip()
-    known = WASHERS.get(int(digits)) if digits.isdigit() else None
-    outer, inner = known if known is not None else tuple(float(digits) * ratio for ratio in BARE_PAD)
-    return 1e-3 * outer, 1e-3 * inner
-
-
-def _digest(case: Case) -> str:
-    """Hash of what the case says of the beam, as a mesh has one of its file."""
-    text = json.dumps(case.document.get("block", {}).get("beam", {}), sort_keys=True, default=str)
-    return hashlib.sha256(text.encode()).hexdigest()

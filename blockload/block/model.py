@@ -75,7 +75,8 @@ class AnyBlock(ABC):
     """What every block has, however far it is known, in car axes [m].
 
     `materials` maps a volume to what it is made of. mass [kg], cg (3,) and inertia (3, 3) about cg are those of the
-    metal that is modelled; `carried` are the masses it does not have, the remainder of the engine included.
+    metal that is modelled; `carried` are the masses it does not have, the remainder of the engine included; sha256 is
+    that of the mesh file, empty without one.
     """
 
     volumes: tuple[str, ...]

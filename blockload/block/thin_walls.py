@@ -14,7 +14,7 @@ exact for straight strips: nodal values of the linear solution are those of the 
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -232,9 +232,3 @@ def between(first: Mapping[str, Wall], last: Mapping[str, Wall], share: float) -
         )
         for name, wall in first.items()
     }
-
-
-def alike(stations: Sequence[Mapping[str, Wall]]) -> bool:
-    """Whether all stations have the same walls with as many points each."""
-    shapes = [{name: (len(wall.points), wall.closed) for name, wall in item.items()} for item in stations]
-    return all(shape == shapes[0] for shape in shapes)

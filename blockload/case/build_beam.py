@@ -14,6 +14,7 @@ from .schema_beam import BeamTable, StationTable, WallTable
 
 _NEEDED = ("area", "centroid", "second_moments", "torsion_constant")
 _PROPERTIES = (*_NEEDED, "product", "shear_areas", "shear_centre", "torsion_modulus", "fibres")
+_PADS = "ISO 7089 (from memory); two diameters where it has none: unsourced"
 _TUBE = (
     "a thin round tube through the studs gives what was not measured (axial and shear stiffness, spread of mass): "
     "unsourced"
@@ -29,6 +30,7 @@ def build_beam(given: BeamTable, faces: Mapping[str, Face], carried_on: str, not
         notes.problem("block.beam", found, "stations along x, or a measured stiffness", remedy)
     _check_alike(stations, notes)
     _check_reach(stations, faces, notes)
+    notes.default("block.beam, pads", "at the studs, each as large as its plain washer", _PADS)
     places = {name: item.at for name, item in given.places.items()}
     if carried_on not in places and len(faces) == 2:
         middle = (faces["front"].x + faces["rear"].x) / 2
@@ -42,7 +44,7 @@ def build_beam(given: BeamTable, faces: Mapping[str, Face], carried_on: str, not
             bending_lateral=given.stiffness.bending_lateral,
             source=given.stiffness.source,
         )
-        notes.default("block.beam.stations", "none", _TUBE)
+        notes.default("block.beam.stations", f"none; stiffness as measured: {measured.source}", _TUBE)
         if given.mass is None:
             remedy = 'add mass = "55 kg" with your own value'
             notes.problem("block.beam.mass", "missing: a stiffness says nothing of it", "the mass of the metal", remedy)
@@ -58,6 +60,8 @@ def _station(name: str, given: StationTable, notes: Notes) -> BeamStation:
     elif not given.walls and missing:
         remedy = f"add them, or draw the section in [{key}.walls.NAME]"
         notes.problem(key, f"{', '.join(missing)} missing", "walls, or " + ", ".join(_NEEDED), remedy)
+    if not given.walls:
+        _note_defaults(key, given, notes)
     values: dict[str, Any] = {item: getattr(given, item) for item in _PROPERTIES}
     values["product"] = 0.0 if given.product is None else given.product
     if given.second_moments is not None and given.second_moments.prod() <= values["product"] ** 2:
@@ -66,6 +70,14 @@ def _station(name: str, given: StationTable, notes: Notes) -> BeamStation:
     values["fibres"] = frozen(np.array(given.fibres) if given.fibres else np.zeros((0, 2)))
     walls = {wall: _wall(f"{key}.walls.{wall}", item, notes) for wall, item in given.walls.items()}
     return BeamStation(name=name, x=given.x, walls=walls, **values)
+
+
+def _note_defaults(key: str, given: StationTable, notes: Notes) -> None:
+    if given.shear_areas is None:
+        tube = "Cowper, J. Appl. Mech. 33 (1966) 335-340, thin square tube"
+        notes.default(f"{key}.shear_areas", "20(1+nu)/(48+39nu) of the area", tube)
+    if given.shear_centre is None:
+        notes.default(f"{key}.shear_centre", "the centroid", "as for a section with two planes of symmetry: unsourced")
 
 
 def _wall(key: str, given: WallTable, notes: Notes) -> BeamWall:

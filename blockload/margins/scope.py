@@ -31,6 +31,7 @@ BEAM_ONLY = (
     "local stress of the block: a beam has no bosses, bores, bulkheads or fillets; nominal stress at its fibres alone",
     "faces that bend and walls that warp or breathe: a beam's faces are rigid and its sections keep their shape",
 )
+NO_MODULUS = "shear stress of torsion in the block: no torsion_modulus at its stations"
 NO_FIBRES = "stress of the block: its stiffness alone is known"
 _ROUNDING = 1e-9  # of the wheel loads: a push below it is none
 FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
@@ -57,8 +58,11 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
     if level == "beam":
         gaps += BEAM_ONLY
         beam = case.block.beam if case.block is not None else None
-        if beam is not None and not any(item.walls or len(item.fibres) for item in beam.stations):
+        stations = beam.stations if beam is not None else ()
+        if not any(item.walls or len(item.fibres) for item in stations):
             gaps.append(NO_FIBRES)
+        elif any(item.torsion_modulus is None and not item.walls for item in stations):
+            gaps.append(NO_MODULUS)
     scope = FACES_ONLY if level == "faces" else SOLID_LATER
     return (*gaps, *scope, *ALWAYS)
 

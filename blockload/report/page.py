@@ -92,7 +92,8 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "checks": _checks(case, margins),
         "assumptions": judged_tables.assumption_tables(case, margins),
     }
-    return _render("page.html", values | _identity(run.run_id, case, made, run.block.sha256 if run.block else None))
+    mesh = run.block.sha256 or None if run.block else None
+    return _render("page.html", values | _identity(run.run_id, case, made, mesh))
 
 
 def loads_page(case: Case, cases: LoadCases, laps: Sequence[LapLoads] = (), *, made: datetime | None = None) -> str:

@@ -77,7 +77,7 @@ def results(
     """
     data = load_results(case, cases, run_id=run_id, version=version)
     if block is not None:
-        data["inputs"]["mesh_sha256"] = block.sha256
+        data["inputs"]["mesh_sha256"] = block.sha256 or None
         data["block"] = {
             "nodes": block.counts[0],
             "elements": block.counts[1],

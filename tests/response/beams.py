@@ -7,7 +7,7 @@ from types import MappingProxyType
 import numpy as np
 from boxes import material
 
-from blockload.block.beam import BeamBlock, _weighed
+from blockload.block.beam import BeamBlock, weighed
 from blockload.block.model import Attachment
 from blockload.block.sections import Section, section_mass, section_stiffness
 
@@ -17,7 +17,7 @@ def beam_of(x: np.ndarray, sections: list[Section], points: list[tuple[str, str,
     metal = material()
     shear = metal.youngs_modulus / (2 * (1 + metal.poissons_ratio))
     per_length = np.array([section_mass(item, metal.density) for item in sections])
-    weighed = _weighed(x, per_length)
+    metal_of = weighed(x, per_length)
     return BeamBlock(
         x=x,
         elastic=np.array([section_stiffness(item, metal.youngs_modulus, shear) for item in sections]),
@@ -28,9 +28,9 @@ def beam_of(x: np.ndarray, sections: list[Section], points: list[tuple[str, str,
         materials=MappingProxyType({"beam": metal}),
         attachments=tuple(_point(*item) for item in points),
         sha256="0" * 64,
-        mass=weighed.mass,
-        cg=weighed.cg,
-        inertia=weighed.inertia,
+        mass=metal_of.mass,
+        cg=metal_of.cg,
+        inertia=metal_of.inertia,
         metadata=MappingProxyType({}),
     )
 
