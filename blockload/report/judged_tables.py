@@ -123,6 +123,17 @@ def stiffness_table(margins: Margins) -> Table:
     return table("Stiffness of the block between its faces", ("mode", "value", "unit"), rows)
 
 
+def rear_face_table(margins: Margins) -> Table:
+    """How far the rear face moves against the tub in each load case."""
+    rows = [
+        (plain_name(name), *(fixed(value, 3, scale=1e-3, sign=True) for value in motion))
+        for name, motion in margins.rear_face.items()
+    ]
+    columns = ("load case", "x, mm", "y, mm", "z, mm", "about x, mrad", "about y, mrad", "about z, mrad")
+    note = "The gearbox's flange at the centroid of its studs, pads and block together, at the middle pad stiffness."
+    return table("Deflection of the rear face against the tub", columns, rows, note)
+
+
 def requirement_tables(margins: Margins) -> tuple[Table, ...]:
     """The requirements sheet: what each face asks of a block that is not there yet."""
     return tuple(_requirement(place, values) for place, values in margins.requirements.items())

@@ -174,7 +174,9 @@ def _pad_tables(run: RunLike, indices: Iterable[int]) -> list[tables.Table]:
 
 
 def _stiffness(margins: Margins) -> list[tables.Table]:
-    return [judged_tables.stiffness_table(margins)] if margins.stiffness else []
+    if not margins.stiffness:
+        return []
+    return [judged_tables.stiffness_table(margins), judged_tables.rear_face_table(margins)]
 
 
 def _checks(case: Case, margins: Margins) -> list[tables.Table]:

@@ -89,6 +89,7 @@ def results(
         data["inputs"]["library_key"] = library.key
         for i, name in enumerate(cases.names):
             data["load_cases"][name]["pads"] = _pads(library, pads, i)
+            data["load_cases"][name]["rear_face_motion"] = list(margins.rear_face[name])
     data["stiffness"] = dict.fromkeys(STIFFNESS_KEYS) | dict(margins.stiffness)
     if margins.requirements:
         data["requirements"] = {face: dict(values) for face, values in margins.requirements.items()}
