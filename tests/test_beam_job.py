@@ -222,3 +222,34 @@ def test_walls_on_one_line_are_refused(tmp_path: Path) -> None:
 
     with pytest.raises(BlockError, match="on one line"):
         from_demo(tmp_path, text.replace("closed = true", "closed = false"))
+
+
+STEPPED = """
+format = "blockload.case/1"
+extends = "{base}"
+[block]
+use = "beam"
+[block.beam]
+mass = "48 kg"
+"""
+STATION = """
+[block.beam.stations.{name}]
+x = "{x} m"
+area = "200 cm^2"
+centroid = "(0, 0.25) m"
+second_moments = "(30000, 30000) cm^4"
+torsion_constant = "{torsion} cm^4"
+"""
+
+
+def test_two_stations_at_one_x_make_a_step(tmp_path: Path) -> None:
+    """A step in the torsion constant is two springs in a row: 1/K = Σ L/GJ, exactly."""
+    rows = (("a", -2.0, 10000), ("b", -2.0, 30000), ("c", -1.6, 30000))
+    run = from_demo(tmp_path, STEPPED + "".join(STATION.format(name=n, x=x, torsion=j) for n, x, j in rows))
+    assert run.block is not None
+    metal = run.block.materials["beam"]
+    shear = metal.youngs_modulus / (2 * (1 + metal.poissons_ratio))
+
+    expected = shear / (0.12 / 10000e-8 + 0.50 / 30000e-8)
+    assert run.margins.stiffness["torsion_Nm_per_rad"] == pytest.approx(expected, rel=1e-9)
+    assert any("no torsion_modulus" in text or "stiffness alone" in text for text in run.margins.verdict.not_judged)

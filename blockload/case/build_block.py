@@ -40,7 +40,7 @@ def build_block(table: CaseTable, folder: Path, faces: Mapping[str, Face], notes
     use = _used(given, notes)
     if use is None:
         return None
-    meshed = given if given.mesh is not None else None
+    meshed = given if use == "mesh" else None
     unit, turn, place = (
         notes.take(meshed, BlockTable, "block", name) if meshed is not None else None
         for name in ("mesh_unit", "turn", "place")
