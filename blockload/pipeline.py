@@ -125,7 +125,7 @@ def check(
     block, library = _respond(case, solver=solver, cache=cache, progress=tell)
     if case.chassis_without_block and library is not None:
         case = _with_block_twist(case, block, library)
-        cases = balance(case)
+        cases = balance(case, judged_only=True)
     tell("margins", 0.0)
     pads, margins = _judge(case, cases, block, library)
     margins = _over_splits(case, cases, block, library, margins, tell)
