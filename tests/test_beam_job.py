@@ -13,6 +13,7 @@ from blockload.block.beam import BeamBlock
 from blockload.case.reading import read
 from blockload.errors import BlockError, CaseError
 from blockload.margins.judging import rules_out
+from blockload.report.beam_sketch import axes_of
 from blockload.report.console import summary
 from blockload.report.results import results
 from blockload.report.writing import write_run
@@ -163,6 +164,7 @@ def test_report_results_and_console_stand(run: pipeline.Run, tmp_path: Path) -> 
 
     assert "a beam has no surface to draw" in page
     assert "beam: a beam between the faces" in page
+    assert page.count("The block as a beam</title>") == 1
     assert data["block"]["elements"] == len(run.block.x) - 1  # type: ignore[union-attr]
     assert data["inputs"]["mesh_sha256"] is None
     assert not (tmp_path / "fields.vtu").exists()
@@ -222,6 +224,17 @@ def test_walls_on_one_line_are_refused(tmp_path: Path) -> None:
 
     with pytest.raises(BlockError, match="on one line"):
         from_demo(tmp_path, text.replace("closed = true", "closed = false"))
+
+
+def test_the_sketch_is_drawn_from_what_was_solved(run: pipeline.Run) -> None:
+    """Centroid and shear centre read back from the pieces' stiffness are those of the case file."""
+    assert isinstance(run.block, BeamBlock)
+    centroid, shear = axes_of(run.block)
+    middle = int(np.abs(run.block.x + 1.81).argmin())
+
+    np.testing.assert_allclose(centroid[middle], [0.0, 0.295], atol=1e-3)
+    np.testing.assert_allclose(shear[middle], [0.0, 0.210], atol=5e-3)
+    np.testing.assert_allclose(centroid[0], [0.0, 0.290], atol=1e-3)
 
 
 STEPPED = """

@@ -14,6 +14,7 @@ from jinja2 import Environment, FileSystemLoader, StrictUndefined
 from markupsafe import Markup, escape
 
 from .. import __version__
+from ..block.beam import BeamBlock
 from ..car.envelope import envelope
 from ..car.lap_model import LapLoads
 from ..car.model import LoadCases
@@ -22,6 +23,7 @@ from ..margins.model import Margins
 from . import judged_tables, tables
 from .aero_tables import case_tables, load_case_tables
 from .bands import bands_svg
+from .beam_sketch import beam_svg
 from .cautions import cautions
 from .choice import extreme_indices, governing_index, lowest, lowest_per_criterion
 from .colours import margin_legend, stress_legend
@@ -78,6 +80,7 @@ def page(run: RunLike, pictures: Pictures | None = None, *, made: datetime | Non
         "not_judged": verdict.not_judged,
         "unsourced": judged_tables.unsourced(case),
         "pictures": _block_pictures(pictures),
+        "beam": _inline(beam_svg(run.block)) if isinstance(run.block, BeamBlock) else "",
         "loads": _load_tables(case, cases),
         "governing_faces": _inline(faces_svg(cases, index, key="governing")),
         "faces": [_inline(faces_svg(cases, i, key=f"faces-{i}")) for i in shown[1:]],
@@ -125,6 +128,7 @@ def loads_page(case: Case, cases: LoadCases, laps: Sequence[LapLoads] = (), *, m
         "governing": "",
         "bands": "",
         "pictures": None,
+        "beam": "",
         "margins": [],
         "stiffness": [],
         "requirements": (),
