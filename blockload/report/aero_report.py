@@ -23,6 +23,7 @@ from .tables import Table, table
 from .wording import figure, fixed, plain_name
 
 _WHOLE = "whole_car"
+RIDE = {"ride_front", "ride_rear"}
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -42,7 +43,9 @@ def aero_against(path: Path, case: Case | None = None) -> AeroReading:
     tables = [_columns(file), _statements(file), _grids(file)]
     if case is None:
         return AeroReading(tables=tuple(tables), warnings=())
+    file, fixed_at = _without_heights(file, case)
     own, merged, notes = _old(case), *_merged(case, file)
+    notes = (*fixed_at, *notes)
     speeds = three_speeds(case)
     old, new = totals(own, speeds), totals(merged, speeds)
     tables += [_sums(old, new), *_shares(old, new), _devices(own, merged, old, new)]
@@ -52,6 +55,31 @@ def aero_against(path: Path, case: Case | None = None) -> AeroReading:
         tables += [influence_table(merged), moved_table(merged)]
         notes += remarks(merged)
     return AeroReading(tables=tuple(tables), warnings=(*alarms(file, old, new), *notes))
+
+
+def _without_heights(file: AeroFile, case: Case) -> tuple[AeroFile, tuple[str, ...]]:
+    """The file at the middle of its own ride heights where the case knows none, and what that leaves to say."""
+    known = (axle.ride_height is not None and axle.ride_stiffness is not None for axle in case.axles.values())
+    if all(known) or not any(RIDE & set(found.axes) for found in file.maps.values()):
+        return file, ()
+    at: dict[str, float] = {}
+    maps = {name: _at_middle(found, at) for name, found in file.maps.items()}
+    words = ", ".join(f"{plain_name(axis)} {1e3 * value:.3g} mm" for axis, value in sorted(at.items()))
+    return replace(file, maps=maps), (f"the case gives no ride heights: compared at {words}, the middle of the file's",)
+
+
+def _at_middle(found: AeroMap, at: dict[str, float]) -> AeroMap:
+    for axis in sorted(RIDE & set(found.axes)):
+        place = found.axes.index(axis)
+        middle = len(found.grid[place]) // 2
+        at[axis] = float(found.grid[place][middle])
+        found = replace(
+            found,
+            axes=(*found.axes[:place], *found.axes[place + 1 :]),
+            grid=(*found.grid[:place], *found.grid[place + 1 :]),
+            values=np.take(found.values, middle, axis=1 + place),
+        )
+    return found
 
 
 def _columns(file: AeroFile) -> Table:

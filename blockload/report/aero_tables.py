@@ -104,8 +104,8 @@ def moved_table(case: Case) -> Table:
                 text = fixed(found.moved[k, b, f, 4], 3, scale=1e3, sign=True)
                 cells.append(f"[{text}]" if body == found.on[k] else text)
         rows.append((plain_name(name), *cells))
-    columns = ("device", *(f"{face}: on {body}" for face in FACES for body in CARRIERS))
-    note = "M_sag in kN·m per kN of downforce; in brackets as the case has it."
+    columns = ("device", *(f"{face}, {body}" for face in FACES for body in CARRIERS))
+    note = "M_sag at each face, kN·m per kN of downforce, were the body named its carrier; in brackets as in the case."
     return table("Were a device carried by another body", columns, rows, note)
 
 

@@ -183,7 +183,8 @@ def _grid(item: TableLike) -> RichTable:
     for column, name in enumerate(item.columns):
         cells = [row[column] for row in item.rows]
         numeric = bool(cells) and all(tables.is_number(cell) for cell in cells)
-        grid.add_column(name, justify="right" if numeric else "left", no_wrap=numeric)
+        least = min(12, max((len(cell) for cell in cells), default=0)) if column == 0 else None
+        grid.add_column(name, justify="right" if numeric else "left", no_wrap=numeric, min_width=least)
     for row in item.rows:
         grid.add_row(*(Text(cell) for cell in row))
     return grid

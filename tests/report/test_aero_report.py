@@ -13,7 +13,6 @@ from car.worked_car import CAR
 from blockload.car.balance import balance
 from blockload.case.model import Case
 from blockload.case.reading import read
-from blockload.errors import CaseError
 from blockload.report.aero_report import AeroReading, aero_against
 from blockload.report.aero_results import aero_written
 from blockload.report.aero_tables import (
@@ -132,11 +131,6 @@ def test_the_demo_map_meets_its_own_case() -> None:
     assert reading.warnings == ()
 
 
-def test_the_demo_map_asks_a_case_without_springs_for_them() -> None:
-    with pytest.raises(CaseError, match="ride_height"):
-        aero_against(CASES / "aero" / "demo-map.csv", replace(CAR, aero_total=None))
-
-
 def test_the_demo_cases_show_ride_heights_and_open_bounds() -> None:
     mapped, open_one = (balance(read(CASES / name)) for name in ("demo-map.toml", "demo-totals.toml"))
 
@@ -193,3 +187,11 @@ def test_a_floor_on_the_gearbox_is_pointed_out_wherever_the_case_is_shown() -> N
 
     assert "carried by the gearbox" in case_tables(replace(CAR, devices=wrong))[0].rows[0][0]
     assert case_tables(CAR)[0].title == "Aero recomputed from the devices"
+
+
+def test_a_case_without_ride_heights_is_compared_at_the_middle_of_the_files_and_told_so() -> None:
+    """The worked car knows no springs: the map's middle heights stand in, and the reading says which."""
+    reading = aero_against(CASES / "aero" / "demo-map.csv", read(CASES / "demo.toml"))
+
+    assert any("no ride heights" in warning and "25 mm" in warning for warning in reading.warnings)
+    assert "Totals" in [item.title for item in reading.tables]
