@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -235,6 +236,36 @@ def test_the_sketch_is_drawn_from_what_was_solved(run: pipeline.Run) -> None:
     np.testing.assert_allclose(centroid[middle], [0.0, 0.295], atol=1e-3)
     np.testing.assert_allclose(shear[middle], [0.0, 0.210], atol=5e-3)
     np.testing.assert_allclose(centroid[0], [0.0, 0.290], atol=1e-3)
+
+
+def test_an_open_casing_is_not_ruled_out_by_its_free_torsion(tmp_path: Path) -> None:
+    """Open at the bottom, the faces hold it from warping: its stress is not believed, its stiffness is a band."""
+    run = from_demo(tmp_path, WALLS.replace("closed = true", "closed = false"), "limits.torsion_min=3 kNm/deg")
+    stress = [item for item in run.margins.margins if item.criterion == "yield"]
+    (torsion,) = [item for item in run.margins.margins if item.criterion == "torsion stiffness"]
+
+    assert {item.trust for item in stress} == {"near an attachment"}
+    assert not any(rules_out(item) for item in stress)
+    assert min(item.margin for item in stress if item.margin is not None) < 0.0
+    assert torsion.band is not None
+    assert torsion.band[0] < 0.0 < torsion.band[1]
+    assert not rules_out(torsion)
+    assert run.margins.verdict.word == "not shown"
+
+
+def test_held_warping_is_vlasovs(tmp_path: Path) -> None:
+    """Without Saint-Venant's part the stiffness is 12 EΓ/L³ (warping held at both ends); long beams do not feel it."""
+    block = from_demo(tmp_path, WALLS.replace("closed = true", "closed = false")).block
+    assert isinstance(block, BeamBlock)
+    length, metal = 0.62, block.materials["beam"]
+    shear = metal.youngs_modulus / (2 * (1 + metal.poissons_ratio))
+    J = 1.08 * 0.005**3 / 3
+    stiff = replace(block, warping=1e4 * block.warping)
+    slack = replace(block, warping=1e-8 * block.warping)
+
+    expected = 12 * stiff.warping.mean() / length**3
+    assert beam.held_torsion(stiff) * shear * J / length == pytest.approx(expected, rel=1e-3)
+    assert beam.held_torsion(slack) == pytest.approx(1.0, abs=1e-2)
 
 
 STEPPED = """

@@ -102,7 +102,7 @@ def mesh_section(block: Block, x: float, poisson: float | None = None) -> MeshSe
     centroid = np.einsum("eq,ieq->i", dA, place) / area
     arm = place - centroid[:, None, None]
     second = np.einsum("eq,ieq,jeq->ij", dA, arm, arm)
-    pieces, torsion, centre, shear = _saint_venant(basis, arm, dA, area, second)
+    pieces, torsion, centre, shear, warping = _saint_venant(basis, arm, dA, area, second)
     ratio = block.materials[block.volumes[0]].poissons_ratio if poisson is None else poisson
     fibres = _hull(mesh)
     recovery = np.zeros((len(fibres), 3, 6))
@@ -120,14 +120,15 @@ def mesh_section(block: Block, x: float, poisson: float | None = None) -> MeshSe
             shear_area=shear,
             fibres=fibres,
             recovery=recovery,
+            warping_constant=warping,
         ),
     )
 
 
 def _saint_venant(
     basis: Any, arm: Floats, dA: Floats, area: float, second: Floats
-) -> tuple[int, float, Floats, Floats]:
-    """Number of pieces, torsion constant, shear centre from the centroid (2,), shear areas (2, 2)."""
+) -> tuple[int, float, Floats, Floats, float]:
+    """Number of pieces, torsion constant, shear centre from the centroid (2,), shear areas (2, 2), warping constant."""
     from skfem import BilinearForm, LinearForm
     from skfem.helpers import dot, grad
 
@@ -143,12 +144,14 @@ def _saint_venant(
     twist = np.asarray(grad(fields[0])) + np.stack([-z, y])
     torsion = float((dA * (twist**2).sum(axis=0)).sum())
     if pieces > 1:
-        return pieces, torsion, np.full(2, np.nan), np.full((2, 2), np.nan)
+        return pieces, torsion, np.full(2, np.nan), np.full((2, 2), np.nan), 0.0
     work = np.array([(dA * np.asarray(fields[0]) * item).sum() for item in (y, z)])
     centre = np.linalg.solve(np.array([[second[0, 1], -second[0, 0]], [second[1, 1], -second[0, 1]]]), -work)
     flows = [np.asarray(grad(field)) for field in fields[1:]]
     flexibility = np.array([[(dA * (a * b).sum(axis=0)).sum() for b in flows] for a in flows])
-    return pieces, torsion, centre, np.linalg.inv(flexibility)
+    about = np.asarray(fields[0]) + centre[0] * z - centre[1] * y
+    about -= (dA * about).sum() / area
+    return pieces, torsion, centre, np.linalg.inv(flexibility), float((dA * about**2).sum())
 
 
 def _cowper(basis: Any, arm: Floats, dA: Floats, area: float, second: Floats, poisson: float) -> Floats:

@@ -28,7 +28,8 @@ class Section:
 
     shear_centre (2,) [m]; shear_area (2, 2) [m²], its inverse symmetric and positive.
     fibres (p, 2) are the places where stress is known, recovery (p, 3, 6) the stress xx, xy, xz there for unit forces
-    N, V_y, V_z, T, M_y, M_z about the point y = z = 0.
+    N, V_y, V_z, T, M_y, M_z about the point y = z = 0. warping_constant [m⁶] is ∫w² dA about the shear centre, 0 where
+    it is not known.
     """
 
     area: float
@@ -39,6 +40,7 @@ class Section:
     shear_area: Floats
     fibres: Floats
     recovery: Floats
+    warping_constant: float = 0.0
 
     @property
     def about_y(self) -> float:

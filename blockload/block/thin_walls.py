@@ -58,7 +58,7 @@ def thin_walled(walls: Mapping[str, Wall], where: str = "walls") -> Section:
     Raises BlockError for walls that do not hang together, lie on one line, or have no length.
     """
     strips = _strips(walls, where)
-    twist = _torsion(strips)
+    warping, twist = _torsion(strips)
     flow = _flexure(strips)
     run = strips.length[:, None] * np.einsum("wak,a->wk", flow, [1 / 6, 4 / 6, 1 / 6])
     moment = strips.distance @ run  # of the flows of unit V_y and V_z about the centroid
@@ -77,6 +77,7 @@ def thin_walled(walls: Mapping[str, Wall], where: str = "walls") -> Section:
         shear_area=np.linalg.inv(flexibility),
         fibres=fibres,
         recovery=recovery,
+        warping_constant=_warping_constant(strips, warping, shear_centre - strips.centroid),
     )
 
 
@@ -155,13 +156,23 @@ def _check_spread(nodes: Floats, where: str) -> None:
         )
 
 
-def _torsion(strips: Strips) -> Floats:
-    """Flow of every strip for unit Gθ', (w,)."""
+def _torsion(strips: Strips) -> tuple[Floats, Floats]:
+    """Warping of every node (n,) and flow of every strip (w,) for unit twist and unit Gθ' about the centroid."""
     t, r = strips.thickness, strips.distance
     load = _gathered(strips, np.column_stack([t * r, -t * r]))
     warping = _warped(strips, load[:, None])[:, 0]
-    result: Floats = t * ((warping[strips.ends[:, 1]] - warping[strips.ends[:, 0]]) / strips.length + r)
-    return result
+    flow: Floats = t * ((warping[strips.ends[:, 1]] - warping[strips.ends[:, 0]]) / strips.length + r)
+    return warping, flow
+
+
+def _warping_constant(strips: Strips, warping: Floats, pole: Floats) -> float:
+    """∫ w² dA of the warping about the shear centre, less its mean; w is linear along a strip."""
+    about = warping + pole[0] * strips.nodes[:, 1] - pole[1] * strips.nodes[:, 0]
+    area = strips.length * strips.thickness
+    first, last = about[strips.ends].T
+    mean = area @ (first + last) / 2 / strips.area
+    first, last = first - mean, last - mean
+    return float(area @ (first**2 + first * last + last**2) / 3)
 
 
 def _flexure(strips: Strips) -> Floats:

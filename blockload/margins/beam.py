@@ -3,6 +3,8 @@
 Beam theory keeps the section's forces and spreads them smoothly; bosses, bores and fillets raise the stress above it.
 So a nominal stress that fails is reason enough to rule a block out, and one that holds shows nothing. Next to a face
 or another attachment the section is not yet in its smooth state (Saint-Venant's principle): there it is not believed.
+An open section held from warping by its faces is never in the free state its torsion stress stands for: none of it is
+believed.
 """
 
 from __future__ import annotations
@@ -12,7 +14,7 @@ from collections.abc import Iterator
 import numpy as np
 
 from ..arrays import Floats, Ints
-from ..block.beam import BeamBlock
+from ..block.beam import BeamBlock, held_torsion
 from ..car.model import LoadCases
 from ..case.model import Case, Check
 from ..installation.model import PadLoads
@@ -26,6 +28,9 @@ from .trust import Trust
 
 APART = 0.1  # of the beam's length: places nearer to each other say the same
 EVERYWHERE, CLEAR = 3, 3  # places per criterion: highest of all, and highest away from attachments
+HELD = 1.25  # torsion stiffer by more than this with warping held: our choice
+BESIDE = "within one pad diameter of an attachment"
+WARPING = "the faces hold this open section from warping all along: its torsion stress is not the free one"
 NOMINAL = "nominal stress of beam theory: bosses, bores and fillets come on top"
 
 
@@ -37,11 +42,14 @@ def beam_margins(
         return ()
     x = library.surface_points[:, 0]
     beside = _beside(block, x)
+    warped = held_torsion(block) > HELD
+    if warped:
+        beside[:] = 1
     found = []
     for field in strength_fields(case, block, library, pads):
         for entry in _hot_sections(field.ratio.max(axis=1), x, beside):
             near = beside[entry]
-            reason = f"within one pad diameter of an attachment; {NOMINAL}" if near else NOMINAL
+            reason = f"{WARPING if warped else BESIDE}; {NOMINAL}" if near else NOMINAL
             trust = Trust(word="near an attachment" if near else "converged", reason=reason)
             y, z = library.surface_points[entry, 1:]
             place = f"beam at x {x[entry]:.3f} m, fibre ({y:.3f}, {z:.3f}) m"

@@ -16,7 +16,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from ..block.beam import BeamBlock
+from ..block.beam import BeamBlock, held_torsion
 from ..block.model import AnyBlock, Block, Material
 from ..car.model import LoadCases
 from ..case.model import Case, Check, MaterialChoice
@@ -107,7 +107,8 @@ def _beam(
     stiffness = stiffnesses(block, library, case)
     strength = beam_margins(case, cases, block, library, pads)
     studs = stud_margins(case, cases, pads=pads, library=library)
-    margins = (*strength, *studs, *face_margins(case, cases), *stiffness_margins(stiffness, case))
+    torsion = stiffness_margins(stiffness, case, held=held_torsion(block))
+    margins = (*strength, *studs, *face_margins(case, cases), *torsion)
     checks = (*checks, *beam_checks(case, cases, block, library, pads))
     return Margins(
         margins=margins,

@@ -105,17 +105,25 @@ def _named(values: Floats) -> list[tuple[str, float]]:
     return [(name, float(value)) for name, value in zip(MODES, values, strict=True)]
 
 
-def stiffness_margins(found: Mapping[str, float], case: Case) -> tuple[Margin, ...]:
-    """Return the margins of the block's own stiffness against torsion_min and bending_min where the case has them."""
+def stiffness_margins(found: Mapping[str, float], case: Case, *, held: float = 1.0) -> tuple[Margin, ...]:
+    """Return the margins of the block's own stiffness against torsion_min and bending_min where the case has them.
+
+    `held` is how much stiffer in torsion the block may be than found: the better end of the band.
+    """
     limits = {
         "torsion": case.limits.torsion_min,
         "bending_vertical": case.limits.bending_min,
         "bending_lateral": case.limits.bending_min,
     }
-    return tuple(_margin(name, found[name + UNIT], limit) for name, limit in limits.items() if limit is not None)
+    better = {"torsion": held}
+    return tuple(
+        _margin(name, found[name + UNIT], limit, better.get(name, 1.0))
+        for name, limit in limits.items()
+        if limit is not None
+    )
 
 
-def _margin(name: str, value: float, limit: float) -> Margin:
+def _margin(name: str, value: float, limit: float, better: float) -> Margin:
     margin = value / limit - 1.0
     return Margin(
         criterion=f"{name.replace('_', ' ')} stiffness",
@@ -127,7 +135,7 @@ def _margin(name: str, value: float, limit: float) -> Margin:
         unit="N·m/rad",
         factor=1.0,
         margin=margin,
-        band=(margin, margin),
+        band=(margin, better * value / limit - 1.0),
         trust="converged",
         causes=(),
         method="block alone, rigid massless planes on the pads' average translations, without pad compliance",

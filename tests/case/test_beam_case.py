@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 from case_texts import WHOLE, read_text
 
+from blockload.case.reading import read
 from blockload.errors import CaseError
 
 STATION = """
@@ -147,3 +148,14 @@ def test_a_frame_turns_a_section_with_everything_else(tmp_path: Path) -> None:
     np.testing.assert_allclose(stations[1].centroid, [-0.26, 0.01])
     np.testing.assert_allclose(stations[1].second_moments, [9000e-8, 12000e-8])
     assert stations[1].product == pytest.approx(-500e-8)
+
+
+def test_a_beam_may_stand_beside_a_mesh() -> None:
+    """With both described `use` chooses; the other is kept, as a reference."""
+    demo = Path(__file__).parents[2] / "cases" / "demo-beam.toml"
+    case = read(demo, ["block.use=mesh"])
+
+    assert case.block is not None
+    assert (case.block.use, case.block.mesh_unit) == ("mesh", 1e-3)
+    assert case.block.beam is not None
+    assert case.block.other["main_bearings"] == "main_*"

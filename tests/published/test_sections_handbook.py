@@ -3,7 +3,8 @@
 Areas and second moments: any handbook (Roark's Formulas for Stress and Strain, 7th ed. 2002, table A.1). Torsion:
 Bredt's J = 4A²/∮ds/t and Σ b t³/3 for open walls (Roark, chapter 10), J = π(R⁴ − r⁴)/2 for the tube. Shear centres:
 where the walls meet for tee and angle; e = 3b²/(h + 6b) behind the web of a channel of even thickness, 2r from the
-centre of a slit tube (Roark, table 9.2; Timoshenko, Strength of Materials, part II, 3rd ed. 1956).
+centre of a slit tube (Roark, table 9.2; Timoshenko, Strength of Materials, part II, 3rd ed. 1956). Warping constant of
+the channel: t b³ h² (3b + 2h) / (12 (6b + h)) (Roark, table 10.2).
 """
 
 from __future__ import annotations
@@ -153,6 +154,12 @@ def test_channel(kind: str, published) -> None:
     got = -found.shear_centre[0]
     published(f"channel of {kind}: shear centre", SOURCE, expected=e, got=got, unit="m", tolerance=tolerance)
     assert found.shear_centre[1] == pytest.approx(0.0, abs=1e-6)
+    expected = t * b**3 * h**2 / 12 * (3 * b + 2 * h) / (6 * b + h)
+    tolerance = 1e-3 if kind == "walls" else 0.05
+    got = found.warping_constant
+    published(
+        f"channel of {kind}: warping constant", SOURCE, expected=expected, got=got, unit="m⁶", tolerance=tolerance
+    )
 
 
 def test_slit_tube(published) -> None:
