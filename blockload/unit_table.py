@@ -54,6 +54,7 @@ DIMENSIONS: Mapping[str, tuple[Dimension, str, Mapping[str, float]]] = {
     "mass": ((1, 0, 0, 0, 0), "kg", {"kg": 1, "t": 1e3, "lb": _POUND}),
     "inertia": ((1, 2, 0, 0, 0), "kg*m^2", {"kg*m^2": 1, "kg*mm^2": 1e-6, "kg*cm^2": 1e-4}),
     "second_moment": ((0, 4, 0, 0, 0), "m^4", {"m^4": 1, "mm^4": 1e-12, "cm^4": 1e-8, "in^4": _INCH**4}),
+    "warping_constant": ((0, 6, 0, 0, 0), "m^6", {"m^6": 1, "mm^6": 1e-18, "cm^6": 1e-12, "in^6": _INCH**6}),
     "section_modulus": ((0, 3, 0, 0, 0), "m^3", {"m^3": 1, "mm^3": 1e-9, "cm^3": 1e-6, "in^3": _INCH**3}),
     "density": ((1, -3, 0, 0, 0), "kg/m^3", {"kg/m^3": 1, "g/cm^3": 1e3, "kg/dm^3": 1e3, "t/m^3": 1e3}),
     "force": (_FORCE, "N", {"N": 1, "kN": 1e3, "MN": 1e6, "lbf": _LBF}),

@@ -253,6 +253,15 @@ def test_an_open_casing_is_not_ruled_out_by_its_free_torsion(tmp_path: Path) -> 
     assert run.margins.verdict.word == "not shown"
 
 
+def test_an_open_section_by_its_properties_says_so_with_its_warping_constant() -> None:
+    """A torsion stress that would rule the closed section out is not believed of an open one."""
+    weak = [f"block.beam.stations.{name}.torsion_modulus=25 cm^3" for name in ("rear", "middle", "front")]
+    opened = [f"block.beam.stations.{name}.warping_constant=3e8 cm^6" for name in ("rear", "middle", "front")]
+
+    assert pipeline.check(DEMO, weak).margins.verdict.word == "ruled out"
+    assert pipeline.check(DEMO, [*weak, *opened]).margins.verdict.word == "not shown"
+
+
 def test_held_warping_is_vlasovs(tmp_path: Path) -> None:
     """Without Saint-Venant's part the stiffness is 12 EΓ/L³ (warping held at both ends); long beams do not feel it."""
     block = from_demo(tmp_path, WALLS.replace("closed = true", "closed = false")).block

@@ -177,6 +177,7 @@ def _section(first: BeamStation, last: BeamStation, x: float, material: Material
         shear_centre=mixed("shear_centre"),
         shear_area=np.diag(mixed("shear_areas")),
         fibres=mixed("fibres"),
+        warping_constant=float(mixed("warping_constant")),
         torsion_modulus=None if first.torsion_modulus is None else float(mixed("torsion_modulus")),
     )
 

@@ -88,6 +88,7 @@ def given_section(
     shear_area: Floats,
     fibres: Floats,
     torsion_modulus: float | None = None,
+    warping_constant: float = 0.0,
 ) -> Section:
     """Return a section from its properties as known.
 
@@ -111,6 +112,7 @@ def given_section(
         shear_area=np.asarray(shear_area, dtype=float),
         fibres=np.asarray(fibres, dtype=float),
         recovery=recovery,
+        warping_constant=warping_constant,
     )
 
 

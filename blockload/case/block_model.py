@@ -45,7 +45,7 @@ class BeamWall:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class BeamStation:
-    """The section at x, by its walls or else by its properties [m², m⁴, m³], (2,) in the order y, z.
+    """The section at x, by its walls or else by its properties [m², m⁴, m³, m⁶], (2,) in the order y, z.
 
     second_moments are (about y, about z), product ∫yz dA, all at the centroid; fibres (p, 2).
     """
@@ -61,6 +61,7 @@ class BeamStation:
     shear_areas: Floats | None = None
     shear_centre: Floats | None = None
     torsion_modulus: float | None = None
+    warping_constant: float = 0.0
     fibres: Floats
 
 

@@ -13,7 +13,7 @@ from .notes import Notes, key_of
 from .schema_beam import BeamTable, StationTable, WallTable
 
 _NEEDED = ("area", "centroid", "second_moments", "torsion_constant")
-_PROPERTIES = (*_NEEDED, "product", "shear_areas", "shear_centre", "torsion_modulus", "fibres")
+_PROPERTIES = (*_NEEDED, "product", "shear_areas", "shear_centre", "torsion_modulus", "warping_constant", "fibres")
 _PADS = "ISO 7089 (from memory); two diameters where it has none: unsourced"
 _TUBE = (
     "a thin round tube through the studs gives what was not measured (axial and shear stiffness, spread of mass): "
@@ -63,7 +63,8 @@ def _station(name: str, given: StationTable, notes: Notes) -> BeamStation:
     if not given.walls:
         _note_defaults(key, given, notes)
     values: dict[str, Any] = {item: getattr(given, item) for item in _PROPERTIES}
-    values["product"] = 0.0 if given.product is None else given.product
+    for item in ("product", "warping_constant"):
+        values[item] = 0.0 if given.walls else notes.take(given, StationTable, key, item)
     if given.second_moments is not None and given.second_moments.prod() <= values["product"] ** 2:
         remedy = "check signs and units: no area has such moments"
         notes.problem(f"{key}.product", "larger than the second moments allow", "a product below their mean", remedy)

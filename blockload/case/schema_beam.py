@@ -72,6 +72,14 @@ class StationTable(Table):
         example='"500 cm^3"',
         band=("0.1 cm^3", "1000000 cm^3"),
     )
+    warping_constant: float | None = quantity(
+        "warping_constant",
+        "integral of the squared warping about the shear centre, for an open section: how far its faces hold it",
+        default="0 m^6",
+        source="as for a closed section: unsourced",
+        example='"0 cm^6"',
+        band=("0 cm^6", "1000000000 cm^6"),
+    )
     fibres: list[Vector] | None = quantity(
         "length_pair",
         "(y, z) of the extreme fibres, in one order at all stations; without them no stress is judged",
