@@ -58,7 +58,7 @@ def _tension(setup: UnitLoads, history: LapHistory, name: str, wrenches: Floats)
     k, side = divmod(CORNERS.index(corner), 2)
     axle, member = setup.maps[k], _MEMBERS[what]
     if member not in axle.members:
-        missing = "a rocker with a spring" if what == "damper" else "links"
+        missing = "rocker with a spring" if what == "damper" else "links"
         raise CaseError(
             f"{history.path}, column {what}_{corner.lower()}",
             f"the {AXLES[k]} axle has no {missing} to take it",

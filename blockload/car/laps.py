@@ -129,7 +129,7 @@ def _samples(
     yield "outside", np.array([mark != "" for mark in inputs.air.outside])
     yield "lifted", tyres.lifted
     yield "pulled", _pulled(force)
-    yield "gap", front_rear_gap(chain)
+    yield "gap", np.where(np.isfinite(chain).all(axis=(1, 2, 3)), front_rear_gap(chain), np.nan)
     for name, face in face_loads(case, chain).items():
         yield f"wrench.{name}", face.wrench[:, 0]
         yield f"axial.{name}", face.stud_axial[:, 0]
