@@ -161,7 +161,7 @@ def test_measured_members_that_the_car_does_not_have_are_refused() -> None:
 
 def test_samples_beyond_grip_and_statics_are_counted_with_the_worst_and_its_place() -> None:
     acceleration = np.zeros((5, 3))
-    acceleration[1:, 1] = (10.0, 25.0, 40.0, 12.0)
+    acceleration[1:, 1] = (10.0, 20.0, 40.0, 12.0)
     acceleration[4, 0] = np.nan
     history = LapHistory(
         name="lap",
@@ -180,7 +180,7 @@ def test_samples_beyond_grip_and_statics_are_counted_with_the_worst_and_its_plac
 
     assert (grip.count, grip.worst_at) == (2, 3)
     assert grip.worst == loads.axle_use[3, 0]
-    assert loads.axle_use[2, 0] == pytest.approx(25.0 / (1.7 * 9.80665), rel=0.05)  # little air, four wheels
+    assert loads.axle_use[2, 0] == pytest.approx(20.0 / (1.7 * 9.80665), rel=0.05)  # little air
     assert (pull.worst_at, pull.worst < 0.0) == (3, True)
     assert (lost.count, lost.worst_at) == (1, 4)
 
