@@ -13,11 +13,13 @@ import pytest
 from blockload import pipeline
 from blockload.block.building import build
 from blockload.car.balance import balance
+from blockload.car.governing import in_group
 from blockload.car.model import SECTION
 from blockload.case.reading import read
 from blockload.errors import BlockError, CaseError
 from blockload.installation.install import install
 from blockload.margins.judging import judge
+from blockload.margins.strength import von_mises
 from blockload.report.suspension_tables import lifted_table
 from blockload.response.cuts import section_stress
 
@@ -190,6 +192,22 @@ def test_loads_that_are_only_handed_on_are_never_judged_with_the_blocks_own_twis
     }
 
     assert not groups & {"roll_structure", "rear_impact"}
+
+
+@pytest.mark.slow
+def test_every_hotspot_finds_its_own_vertex_of_the_grip_and_power_boundary() -> None:
+    """Vertices are ordinary load cases: at each hotspot the governing case is found again among all of them."""
+    run = demo.run("demo", 'envelope.speeds=["30 m/s", "60 m/s"]', "envelope.headings=12")
+    assert run.library is not None
+    assert run.pads is not None
+    states = run.pads.weights.sum(axis=2)
+    points = run.library.surface_points[run.library.entry_node]
+    for item in [item for item in run.margins.margins if item.criterion == "yield"][:3]:
+        entry = int(np.linalg.norm(points - item.at, axis=1).argmin())
+        applied = von_mises(np.asarray(run.library.stress[entry]) @ np.moveaxis(states, -1, -2))
+
+        assert item.load_case == run.cases.names[int(applied.reshape(len(states), -1).max(axis=0).argmax())]
+    assert len(in_group(run.cases, "envelope")) == 24
 
 
 def test_a_lifted_wheel_is_solved_on_three_wheels_and_said() -> None:

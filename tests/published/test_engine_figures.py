@@ -13,6 +13,7 @@ from collections.abc import Callable
 import pytest
 
 from blockload.car.engine import bmep, displacement, mean_piston_speed, power, torque_at
+from blockload.car.torque import PRESSURE
 
 HEYWOOD = "Heywood 1988, eq. 2.19-2.20"
 V8_DATA = "published 2.4 L V8 data 2006-08 (from memory)"
@@ -41,6 +42,19 @@ def test_swept_volume_piston_speed_and_pressure_of_a_racing_v8(published: Publis
     published(
         "BMEP of 290 N·m from 2.4 L", V8_DATA, expected=15.18e5, got=bmep(290.0, 2.4e-3), unit="Pa", tolerance=5e-4
     )
+
+
+def test_swept_volume_of_the_six_of_the_rules(published: Published) -> None:
+    """Six of 80 x 53 mm: the bore is in the FIA F1 regulations, the stroke from memory."""
+    got = displacement(80e-3, 53e-3, 6)
+    what = "swept volume 80 x 53 x 6"
+    source = "FIA F1 regulations (bore; stroke from memory)"
+    published(what, source, expected=1598.44e-6, got=got, unit="m³", tolerance=1e-5)
+
+
+def test_the_pressures_warned_about_lie_at_the_top_of_the_handbooks_ranges() -> None:
+    """Heywood section 2.7: charged spark engines to 17 bar, freely breathing racing ones to 15 (from memory)."""
+    assert {charged: limit / 1e5 for charged, limit in PRESSURE.items()} == {False: 15.0, True: 17.0}
 
 
 def test_mean_piston_speed_of_a_road_engine(published: Published) -> None:
