@@ -44,6 +44,9 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
         gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
     gaps += [f"{gap.situation}: {gap.why}" for gap in expansion(case).omissions]
     gaps += _signs_that_never_turn(cases)
+    if case.laps:
+        names = ", ".join(lap.name for lap in case.laps)
+        gaps.append(f"laps ({names}): their loads are handed on, no margin or life is drawn from them")
     without = _without_ratio(cases)
     if without:
         gaps.append(f"crank torque without an overall ratio: {', '.join(without)}")

@@ -49,13 +49,13 @@ def main() -> None:
             history, lost = resampled(recorded, None)
             lap = lap_loads(linked(), history, lost=lost)
             balanced = time.perf_counter()
-            found = len(extremes(lap)), len(flags(lap))
+            found = len(extremes(lap)) + len(flags(lap))
             told = time.perf_counter()
             write_laps(Path(name), (lap,))
             written = time.perf_counter()
             print(
                 f"{COUNT} samples, rods {rods}: read {read - start:.2f} s, faces, studs and links "
-                f"{balanced - read:.2f} s, {found[0]} extremes {told - balanced:.2f} s, written {written - told:.2f} s; "
+                f"{balanced - read:.2f} s, {found} extremes {told - balanced:.2f} s, written {written - told:.2f} s; "
                 f"peak memory {peak():.0f} MiB"
             )
 
