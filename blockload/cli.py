@@ -99,6 +99,10 @@ def loads(
     from .report.console import loads_tables
 
     read_case, cases = pipeline.loads(case, set_ or ())
+    if json is not None or report is not None:
+        from .report.writing import refuse_own_inputs
+
+        refuse_own_inputs(read_case, [target for target in (json, report) if target is not None])
     laps = pipeline.laps(read_case)
     tables = loads_tables(read_case, cases, laps, shown=show)
     if json is not None:

@@ -7,9 +7,13 @@ import re
 import shutil
 import subprocess
 import sys
+from collections.abc import Callable
 from pathlib import Path
+from typing import Any
 
 import pytest
+
+from blockload.report.verifying import verify_run
 
 ROOT = Path(__file__).parent.parent
 CASES = ROOT / "cases"
@@ -60,15 +64,71 @@ def test_check_at_level_faces_writes_a_run_that_verifies(tmp_path: Path) -> None
     assert verified.returncode == 0, verified.stdout
 
 
-def test_a_run_whose_numbers_were_touched_does_not_verify(tmp_path: Path) -> None:
-    blockload("check", CASES / "concept.toml", "--output", tmp_path / "run")
-    path = tmp_path / "run" / "results.json"
-    data = json.loads(path.read_text(encoding="utf-8"))
-    first = next(iter(data["load_cases"].values()))
-    first["wheels"]["FL"]["force"][2] += 10.0
-    path.write_text(json.dumps(data), encoding="utf-8")
+def _first_case(data: dict[str, Any]) -> dict[str, Any]:
+    return next(iter(data["load_cases"].values()))
 
-    assert blockload("verify", tmp_path / "run").returncode == 1
+
+def _loaded_margin(data: dict[str, Any]) -> dict[str, Any]:
+    return next(item for item in data["margins"] if item["margin"] is not None)
+
+
+FALSIFIED: dict[str, Callable[[dict[str, Any]], object]] = {
+    "a wheel": lambda data: _first_case(data)["wheels"]["FL"]["force"].__setitem__(2, 1.0),
+    "a section": lambda data: _first_case(data)["faces"]["front"]["section"].update(M_sag=1.0),
+    "a stud": lambda data: _first_case(data)["faces"]["rear"]["studs"]["TL"].update(axial=0.0),
+    "a margin": lambda data: _loaded_margin(data).update(margin=5.0),
+    "an applied value": lambda data: _loaded_margin(data).update(applied=1.0),
+    "the lowest margin": lambda data: data["verdict"].update(lowest_margin=3.0),
+    "the verdict": lambda data: data["verdict"].update(word="shown within scope"),
+}
+
+
+@pytest.fixture(scope="module")
+def concept_run(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    folder = tmp_path_factory.mktemp("concept") / "run"
+    blockload("check", CASES / "concept.toml", "--output", folder)
+    return folder
+
+
+@pytest.mark.parametrize("what", FALSIFIED)
+def test_a_run_whose_numbers_were_touched_does_not_verify(what: str, concept_run: Path, tmp_path: Path) -> None:
+    run = shutil.copytree(concept_run, tmp_path / "run")
+    data = json.loads((run / "results.json").read_text(encoding="utf-8"))
+    FALSIFIED[what](data)
+    (run / "results.json").write_text(json.dumps(data), encoding="utf-8")
+
+    assert all(item.ok for item in verify_run(concept_run))
+    assert not all(item.ok for item in verify_run(run))
+
+
+def test_results_that_lack_what_a_run_holds_are_refused_by_name(tmp_path: Path) -> None:
+    (tmp_path / "results.json").write_text('{"format": "blockload.results/1"}', encoding="utf-8")
+    for command in (("verify", tmp_path), ("compare", tmp_path, tmp_path)):
+        done = blockload(*command)
+
+        assert done.returncode == 2
+        assert "load_cases" in done.stderr
+
+
+@pytest.mark.parametrize("option", ["--report", "--json"])
+def test_a_case_file_is_never_written_over(option: str, tmp_path: Path) -> None:
+    for name in ("concept.toml", "concept-narrow.toml"):
+        shutil.copy(CASES / name, tmp_path / name)
+    before = (tmp_path / "concept.toml").read_bytes()
+    done = blockload("loads", "concept-narrow.toml", option, "concept.toml", cwd=tmp_path)
+
+    assert done.returncode == 2
+    assert "input of this case" in done.stderr
+    assert (tmp_path / "concept.toml").read_bytes() == before
+
+
+@pytest.mark.skipif(sys.platform == "win32", reason="links need rights there")
+def test_a_link_that_leads_back_to_itself_is_refused(tmp_path: Path) -> None:
+    (tmp_path / "loop.toml").symlink_to(tmp_path / "loop.toml")
+    done = blockload("loads", tmp_path / "loop.toml")
+
+    assert done.returncode == 2
+    assert "Traceback" not in done.stderr
 
 
 def test_compare_prints_two_cases_side_by_side(tmp_path: Path) -> None:

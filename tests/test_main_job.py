@@ -15,9 +15,11 @@ from blockload.block.building import build
 from blockload.car.balance import balance
 from blockload.car.governing import in_group
 from blockload.car.model import SECTION
+from blockload.case.model import SecondPath
 from blockload.case.reading import read
 from blockload.errors import BlockError, CaseError
 from blockload.installation.install import install
+from blockload.margins.faces import face_margins
 from blockload.margins.judging import judge
 from blockload.margins.strength import von_mises
 from blockload.report.suspension_tables import lifted_table
@@ -218,6 +220,49 @@ def test_a_lifted_wheel_is_solved_on_three_wheels_and_said() -> None:
     assert cases.wheels[corner, 0, 2] == pytest.approx(0.0, abs=1e-6)
     assert not cases.wheel_lift[corner]
     assert "FL" in " ".join(lifted_table(cases).rows[0])
+
+
+def test_a_load_case_beyond_the_tyres_grip_rules_nothing_out_and_shows_nothing() -> None:
+    run = demo.run("demo", "manoeuvres.launch.acceleration=(30, 0, 0) m/s^2")
+
+    assert run.margins.verdict.word == "not shown"
+    assert any("grip" in reason and "launch" in reason for reason in run.margins.verdict.reasons)
+    assert [item.name for item in run.margins.checks if not item.ok] == ["load cases beyond the grip of an axle"]
+
+
+def test_a_second_load_path_takes_its_share_off_the_face_slip() -> None:
+    """A strut from tub to gearbox carries force past both faces: their slip changes with its tension."""
+    run = demo.run("demo")
+    assert run.block is not None
+    assert run.library is not None
+    ends = {"from_at": np.array([-1.4, 0.0, 0.5]), "to_at": np.array([-2.3, 0.0, 0.5])}
+    strut = SecondPath(name="strut", from_body="tub", to_body="gearbox", stiffness=2e8, **ends)
+    braced = replace(run.case, paths=(strut,))
+    pads = install(run.cases, run.block, run.library, braced)
+    plain, eased = face_margins(run.case, run.cases), face_margins(braced, run.cases, pads)
+
+    assert np.abs(pads.path_force.sum(axis=2)).max() > 1e3
+    assert pads.sum_gap < 1e-9
+    for before, after in zip(plain, eased, strict=True):
+        assert before.margin is not None
+        assert after.margin is not None
+        assert abs(before.margin - after.margin) > 1e-3
+
+
+def test_a_tub_matrix_leaves_the_faces_bending_to_the_studs() -> None:
+    """A tub known by its studs' translations holds no pad in rotation, however soft it is."""
+    run = demo.run("demo")
+    assert run.block is not None
+    assert run.library is not None
+    soft = replace(run.case, installation=replace(run.case.installation, tub=np.eye(12) * 2e7))
+    pads = install(run.cases, run.block, run.library, soft)
+    couples = [
+        np.abs(pads.weights[..., run.library.rows("front", stud.name)][..., 3:]).max()
+        for stud in run.case.faces["front"].studs
+    ]
+
+    assert max(couples) == pytest.approx(0.0, abs=1e-6)
+    assert pads.sum_gap < 1e-9
 
 
 def test_a_car_that_would_tip_is_flagged_and_nothing_is_shown() -> None:

@@ -15,7 +15,7 @@ from .bodies import AXLES
 from .limits import axle_use
 from .model import LoadCases
 
-_SLACK = 2e-3  # a crank's own couple moves load between two tyres at their limit by this much
+SLACK = 2e-3  # a crank's own couple moves load between two tyres at their limit by this much
 _NOT_DRIVEN = ("extra.", "point.")
 
 
@@ -37,7 +37,7 @@ def grip_notes(case: Case, cases: LoadCases) -> Iterator[str]:
     """Sentences on load cases beyond the grip of an axle, worst axle first in each."""
     used = grip_used(case, cases)
     for c, name in enumerate(cases.names):
-        beyond = [k for k in np.argsort(-np.nan_to_num(used[c])) if used[c, k] > 1.0 + _SLACK]
+        beyond = [k for k in np.argsort(-np.nan_to_num(used[c])) if used[c, k] > 1.0 + SLACK]
         if beyond:
             words = " and ".join(f"the {AXLES[k]} axle {used[c, k]:.3g} times" for k in beyond)
             yield (

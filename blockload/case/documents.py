@@ -39,7 +39,10 @@ def layers(path: Path) -> tuple[Layer, ...]:
     seen: list[Path] = []
     place = str(path)
     while True:
-        resolved = path.resolve()
+        try:
+            resolved = path.resolve()
+        except (OSError, RuntimeError) as error:  # a link that leads back to itself
+            raise CaseError(place, f"cannot be followed: {error}", "a readable file", "check the links") from error
         if resolved in seen:
             circle = " -> ".join(item.name for item in [*seen[seen.index(resolved) :], resolved])
             remedy = "take `extends` out of one of these files"

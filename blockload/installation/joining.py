@@ -27,7 +27,11 @@ def pads(block: AnyBlock, case: Case, kind: str) -> tuple[Attachment, ...]:
 
 
 def connections(block: AnyBlock, library: Library, case: Case, *, normal: float, tangential: float) -> Connections:
-    """Return what joins the block to tub and gearbox for one pad stiffness [N/m]."""
+    """Return what joins the block to tub and gearbox for one pad stiffness [N/m].
+
+    A tub matrix knows the studs' three translations alone. Its pads then carry no couple of their own: held against a
+    rigid ground in rotation beside a soft one in translation, they would take the face's bending off the studs.
+    """
     front, rear = pads(block, case, "front"), pads(block, case, "rear")
     every = (*front, *rear)
     modes = library.rigid_modes()
@@ -43,10 +47,17 @@ def connections(block: AnyBlock, library: Library, case: Case, *, normal: float,
     compliance = block_diag(
         *(pad_compliance(pad, normal, tangential) for pad in every), *(1.0 / path.stiffness for path in case.paths)
     )
+    used = np.ones(len(compliance), dtype=bool)
     if case.installation.tub is not None:
         add_tub(compliance, case.installation.tub, len(front))
+        used[: 6 * len(front)] = np.tile([True] * 3 + [False] * 3, len(front))
     holding = np.concatenate([np.tile([True] * 3 + [False] * 3, len(every)), np.ones(len(case.paths), dtype=bool)])
-    return Connections(on_block=on_block, on_gearbox=on_gearbox, compliance=compliance, holding=holding)
+    return Connections(
+        on_block=on_block[:, used],
+        on_gearbox=on_gearbox[:, used],
+        compliance=compliance[np.ix_(used, used)],
+        holding=holding[used],
+    )
 
 
 def add_tub(compliance: Floats, tub: Floats, count: int) -> None:

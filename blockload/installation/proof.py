@@ -15,10 +15,11 @@ import numpy as np
 from ..arrays import Floats
 from ..block.model import AnyBlock
 from ..car.model import LoadCases
-from ..case.model import Case, SecondPath
+from ..case.model import Case
 from ..response.model import Library
 from .applied import acceleration_at
 from .joining import pads
+from .paths import past
 
 TINY = np.finfo(float).tiny
 
@@ -96,17 +97,3 @@ def _face_gap(
     scale = np.array([1.0, 1.0, 1.0, *[1.0 / arm] * 3])
     size = np.abs(loads.wrench.sum(axis=1) * scale).max()
     return float(np.abs(gap * scale).max() / max(size, TINY))
-
-
-def past(path: SecondPath, face: str, reference: Floats) -> Floats:
-    """Return what unit tension of a path carries across a face, on the part that holds the engine, (6,)."""
-    behind = {"front": ("engine", "gearbox"), "rear": ("gearbox",)}[face]
-    line = path.to_at - path.from_at
-    unit = line / np.linalg.norm(line)
-    sign = 1.0 if face == "front" else -1.0
-    wrench = np.zeros(6)
-    for body, at, sense in ((path.from_body, path.from_at, sign), (path.to_body, path.to_at, -sign)):
-        if body in behind:
-            force = sense * unit
-            wrench += np.concatenate([force, np.cross(at - reference, force)])
-    return wrench

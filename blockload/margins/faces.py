@@ -1,27 +1,70 @@
 """A face as a whole: slip of all its studs together, and a supplier's limit on its bending moment.
 
-These follow from the face wrench alone, so no stiffness enters and the band has no width. A friction joint under
-shear V and torsion T about the studs' centroid is safe where |V|/V0 + |T|/T0 does not exceed one, with V0 = Σ μF_V,min
-and T0 = Σ μF_V,min r: the straight line lies inside the true limit surface of the group, which is convex and has both
-end points (lower bound theorem of plasticity). Tension N across the face takes μ(1 − Φ)N off.
+These follow from the face wrench alone, so no stiffness enters and the band has no width, unless there are second load
+paths. A friction joint under shear V and torsion T about the studs' centroid is safe where |V|/V0 + |T|/T0 does not
+exceed one, with V0 = Σ μF_V,min and T0 = Σ μF_V,min r: the straight line lies inside the true limit surface of the
+group, which is convex and has both end points (lower bound theorem of plasticity). Tension N across the face takes
+μ(1 − Φ)N off.
 """
 
 from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import replace
 
 import numpy as np
 
 from ..arrays import Floats
 from ..car.model import FaceLoads, LoadCases
+from ..car.studs import rigid_face
 from ..case.model import Case
+from ..installation.model import PadLoads
+from ..installation.paths import past
 from .model import Margin
 from .studs import joint
 from .wording import INCREMENT, causes, margin_at
 
 
-def face_margins(case: Case, cases: LoadCases) -> tuple[Margin, ...]:
-    """Return face slip of both faces, and the moment limit where the supplier gave one."""
+def face_margins(case: Case, cases: LoadCases, pads: PadLoads | None = None) -> tuple[Margin, ...]:
+    """Return face slip of both faces, and the moment limit where the supplier gave one.
+
+    Second load paths take their share past the studs; with the installed `pads` it is left out, and the band runs over
+    the pad stiffnesses.
+    """
+    if pads is None or not case.paths:
+        return _of_faces(case, cases, cases.faces)
+    installed = replace(cases, sources=pads.sources)
+    found = [_of_faces(case, installed, _less_paths(case, cases, pads, p)) for p in range(len(pads.variants))]
+    return tuple(_worst(items) for items in zip(*found, strict=True))
+
+
+def _less_paths(case: Case, cases: LoadCases, pads: PadLoads, variant: int) -> dict[str, FaceLoads]:
+    """The faces without what the second paths carry past them, at one pad stiffness."""
+    found = {}
+    for name, loads in cases.faces.items():
+        more = len(pads.sources) - loads.wrench.shape[1]
+        wrench = np.pad(loads.wrench, ((0, 0), (0, more), (0, 0)))
+        for index, path in enumerate(case.paths):
+            tension = pads.path_force[variant, :, :, index]
+            wrench -= tension[..., None] * past(path, name, loads.reference)
+        axial, shear = rigid_face(loads.stud_at[:, -2:], wrench)
+        found[name] = replace(loads, wrench=wrench, stud_axial=axial, stud_shear=shear)
+    return found
+
+
+def _worst(items: Sequence[Margin]) -> Margin:
+    """The lowest of one margin at every pad stiffness, with the band of all."""
+    loaded = [item for item in items if item.margin is not None]
+    if not loaded:
+        return items[0]
+    values = [item.margin for item in loaded if item.margin is not None]
+    lowest = loaded[int(np.argmin(values))]
+    return replace(lowest, band=(min(values), max(values)))
+
+
+def _of_faces(case: Case, cases: LoadCases, faces: Mapping[str, FaceLoads]) -> tuple[Margin, ...]:
     found = []
-    for loads in cases.faces.values():
+    for loads in faces.values():
         allowable, applied, parts = _slip(case, loads)
         found.append(
             _margin(

@@ -3,8 +3,8 @@
 `ruled out`: a margin fails at both ends of its band and its number may be believed. A stress at a sharp re-entrant
 edge or within a pad diameter of an attachment may not: it alone cannot rule a block out, and it cannot show one
 either. A coarse stress counts only if it fails with the spread of its single elements taken off as well. A margin in a
-load case that lifts a wheel cannot rule out, for that is not a state of the car; nor one in a load case whose aero map
-was read beyond its grid.
+load case that lifts a wheel or asks more than its tyres hold cannot rule out, for that is not a state of the car; nor
+one in a load case whose aero map was read beyond its grid. Rigid faces cannot rule out where second paths are given.
 `not shown`: a check fails, a band crosses zero, a failing number is not believed, a criterion or base state is
 missing, a guess may govern, or there is no solid block yet: rigid faces and a beam can rule out, never show.
 `shown within scope`: none of these.
@@ -23,7 +23,16 @@ from ..case.model import Case, Check, MaterialChoice
 from ..installation.model import PadLoads
 from ..response.model import Library
 from .faces import face_margins
-from .load_checks import WHEEL_CHECK, aero_doubts, air_checks, cases_at_map_edge, lifted_cases, load_checks
+from .load_checks import (
+    STATE_CHECKS,
+    aero_doubts,
+    air_checks,
+    cases_at_map_edge,
+    cases_beyond_grip,
+    grip_checks,
+    lifted_cases,
+    load_checks,
+)
 from .model import Margin, Margins, Verdict
 from .requirements import requirements
 from .scope import not_judged
@@ -52,7 +61,7 @@ def judge(
         At level `faces`, what the block would be cast in, for the requirements sheet; by default that of [concept].
 
     """
-    checks = (*load_checks(cases), *air_checks(case, cases))
+    checks = (*load_checks(cases), *air_checks(case, cases), *grip_checks(case, cases))
     if isinstance(block, BeamBlock) and library is not None and pads is not None:
         return _beam(case, cases, block, library, pads, checks=checks)
     if isinstance(block, Block) and library is not None and pads is not None:
@@ -86,7 +95,7 @@ def _solid(
     stiffness = stiffnesses(block, library, case)
     strength, surface = strength_margins(case, cases, block, library, pads)
     studs = stud_margins(case, cases, pads=pads, library=library)
-    margins = (*strength, *studs, *face_margins(case, cases), *stiffness_margins(stiffness, case))
+    margins = (*strength, *studs, *face_margins(case, cases, pads), *stiffness_margins(stiffness, case))
     checks = (*checks, *solid_checks(case, cases, block, library, pads))
     return Margins(
         margins=margins,
@@ -108,7 +117,7 @@ def _beam(
     strength = beam_margins(case, cases, block, library, pads)
     studs = stud_margins(case, cases, pads=pads, library=library)
     torsion = stiffness_margins(stiffness, case, held=held_torsion(block))
-    margins = (*strength, *studs, *face_margins(case, cases), *torsion)
+    margins = (*strength, *studs, *face_margins(case, cases, pads), *torsion)
     checks = (*checks, *beam_checks(case, cases, block, library, pads))
     return Margins(
         margins=margins,
@@ -125,13 +134,15 @@ def verdict(case: Case, cases: LoadCases, margins: Sequence[Margin], checks: Seq
     lowest = min(loaded, key=lambda item: item.margin or 0.0, default=None)
     lifted = lifted_cases(cases)
     failed = [item for item in (*case.checks, *checks) if not item.ok]
-    broken = [item for item in failed if item.name != WHEEL_CHECK]
-    edge = cases_at_map_edge(cases)
-    ruling = [item for item in loaded if rules_out(item, (*lifted, *edge))]
-    if ruling and not broken:
+    broken = [item for item in failed if item.name not in STATE_CHECKS]
+    beyond = cases_beyond_grip(case, cases)
+    unreal = (*lifted, *cases_at_map_edge(cases), *beyond)
+    ruling = [item for item in loaded if rules_out(item, unreal)]
+    if ruling and not broken and (level != "faces" or not case.paths):
         word, reasons = "ruled out", tuple(_failure(item) for item in sorted(ruling, key=_lowest_first)[:3])
     else:
-        reasons = (*_doubts(case, loaded, failed, lifted, level=level), *aero_doubts(cases))
+        doubts = _doubts(case, loaded, failed, (lifted, beyond), level=level)
+        reasons = (*doubts, *aero_doubts(cases))
         word = "not shown" if reasons else "shown within scope"
     return Verdict(
         word=word,
@@ -154,13 +165,21 @@ def rules_out(item: Margin, lifted: Sequence[str] = ()) -> bool:
 
 
 def _doubts(
-    case: Case, loaded: Sequence[Margin], failed: Sequence[Check], lifted: Sequence[str], *, level: str
+    case: Case,
+    loaded: Sequence[Margin],
+    failed: Sequence[Check],
+    unreal: tuple[Sequence[str], Sequence[str]],
+    *,
+    level: str,
 ) -> list[str]:
-    doubts = [f"check failed: {item.name}" for item in failed if item.name != WHEEL_CHECK]
+    lifted, beyond = unreal
+    doubts = [f"check failed: {item.name}" for item in failed if item.name not in STATE_CHECKS]
     if lifted:
         doubts.append(f"wheel load below zero in {', '.join(lifted)}: the ground cannot pull")
+    if beyond:
+        doubts.append(f"more grip asked than the tyres have in {', '.join(beyond)}: the car cannot do this")
     failing = [item for item in loaded if item.band is not None and min(item.band) < 0.0]
-    doubts += [_doubt(item, lifted) for item in sorted(failing, key=_lowest_first)]
+    doubts += [_doubt(item, (*lifted, *beyond)) for item in sorted(failing, key=_lowest_first)]
     if level == "faces":
         doubts.append("no block yet: rigid faces and studs can rule out, never show")
     else:
@@ -182,7 +201,7 @@ def _doubt(item: Margin, lifted: Sequence[str]) -> str:
         return f"band crosses zero, {low:.2f} to {high:.2f}: {_named(item)}"
     if rules_out(item, lifted):
         return f"fails at both ends of its band, but a check failed: {_named(item)}"
-    why = "wheel load below zero" if item.load_case in lifted else item.trust
+    why = "no state of the car" if item.load_case in lifted else item.trust
     return f"fails, but the number is not believed ({why}): {_named(item)}"
 
 

@@ -7,11 +7,17 @@ from collections.abc import Iterator
 import numpy as np
 
 from ..car.aero_check import factor_on_aero
+from ..car.grip_notes import grip_used
 from ..car.model import LoadCases
 from ..case.model import Case, Check
 
 WHEEL_CHECK = "load cases with a wheel load below zero"
+GRIP_CHECK = "load cases beyond the grip of an axle"
+STATE_CHECKS = (WHEEL_CHECK, GRIP_CHECK)
+"""Checks that speak of single load cases, which then decide nothing, and not of the analysis."""
 BALANCE = 1e-6
+GRIP_SLACK = 0.02
+"""Share of grip beyond its limit that still counts as rounding of friction and accelerations (unsourced)."""
 
 
 def load_checks(cases: LoadCases) -> Iterator[Check]:
@@ -25,6 +31,23 @@ def load_checks(cases: LoadCases) -> Iterator[Check]:
     note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
     yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
     yield from _sign(cases)
+
+
+def cases_beyond_grip(case: Case, cases: LoadCases) -> tuple[str, ...]:
+    """Return the load cases that ask more of an axle than its tyres hold, blows at the wheels left out."""
+    used = grip_used(case, cases)
+    return tuple(name for name, axles in zip(cases.names, used, strict=True) if (axles > 1.0 + GRIP_SLACK).any())
+
+
+def grip_checks(case: Case, cases: LoadCases) -> Iterator[Check]:
+    """Yield the check of the tyres' grip, where their friction is known."""
+    used = grip_used(case, cases)
+    if not np.isfinite(used).any():
+        return
+    worst = int(np.nanargmax(np.nanmax(np.where(np.isfinite(used), used, -1.0), axis=1)))
+    beyond = cases_beyond_grip(case, cases)
+    note = f"of the grip used, worst in {cases.names[worst]}"
+    yield Check(name=GRIP_CHECK, ok=not beyond, value=float(np.nanmax(used)), limit=1.0 + GRIP_SLACK, note=note)
 
 
 def air_checks(case: Case, cases: LoadCases) -> Iterator[Check]:

@@ -40,6 +40,8 @@ FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
 def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
     """Return what this run leaves open, the case's own gaps first."""
     gaps: list[str] = []
+    if case.paths and level == "faces":
+        gaps.append("second load paths: given, and not used before there is a block")
     if case.installation.second_paths is None and not case.paths:
         gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
     gaps += [f"{gap.situation}: {gap.why}" for gap in expansion(case).omissions]

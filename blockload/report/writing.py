@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import hashlib
 import tomllib
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
@@ -13,6 +13,7 @@ from ..car.envelope import envelope
 from ..car.lap_model import LapLoads
 from ..car.model import LoadCases
 from ..case.model import Case
+from ..errors import OutputError
 from .choice import governing_index
 from .curves import along_csv, envelope_csv, free_bodies_csv
 from .files import probe_folder, refusal, write_beside, write_text
@@ -152,3 +153,13 @@ def _extended(path: Path) -> Path | None:
 
 
 __all__ = ["probe_output", "write_handover", "write_laps", "write_run", "write_text"]
+
+
+def refuse_own_inputs(case: Case, targets: Iterable[Path]) -> None:
+    """Refuse to write over the case file or anything it is made of; raises OutputError."""
+    inputs = {source.resolve() for source in _sources(case)}
+    if case.block is not None and case.block.mesh is not None:
+        inputs.add(case.block.mesh.resolve())
+    for target in targets:
+        if target.resolve() in inputs:
+            raise OutputError(str(target), "is an input of this case", "a new file", "choose another name")
