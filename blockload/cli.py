@@ -11,6 +11,7 @@ import traceback
 from collections.abc import Iterator
 from contextlib import contextmanager
 from enum import StrEnum
+from io import TextIOWrapper
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
@@ -261,6 +262,9 @@ def _progress() -> Iterator[Progress]:
 
 def main() -> None:
     """Entry point: run a command and turn every refusal into a message and an exit code."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):  # a pipe on Windows may not know the minus sign
+            stream.reconfigure(encoding="utf-8", errors="replace")
     try:
         app()
     except BlockloadError as refusal:

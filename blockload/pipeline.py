@@ -17,6 +17,7 @@ from typing import TYPE_CHECKING, Any
 
 from . import __version__
 from .car.balance import balance
+from .car.catalogue.expanding import expand
 from .case.reading import read, replaced
 
 if TYPE_CHECKING:
@@ -179,6 +180,30 @@ def _with_block_twist(case: Case, block: AnyBlock | None, library: Library | Non
 
 
 def _judge(
+    case: Case, cases: LoadCases, block: AnyBlock | None, library: Library | None
+) -> tuple[PadLoads | None, Margins]:
+    """Judge all load cases; where some are no states of the car, only the others may rule out.
+
+    A band spans pad stiffnesses, each with its own worst load case: an impossible one at one end would otherwise hide
+    a failure, or lend it its other end.
+    """
+    from .margins.load_checks import unreal_cases
+
+    pads, margins = _judge_all(case, cases, block, library)
+    unreal = unreal_cases(case, cases)
+    if not unreal or len(unreal) == len(cases.names):
+        return pads, margins
+    every = (*case.manoeuvres, *expand(case))
+    real = balance(case, [item for item in every if item.name in cases.names and item.name not in unreal])
+    alone = _judge_all(case, real, block, library)[1].verdict
+    if "ruled out" not in (alone.word, margins.verdict.word):
+        return pads, margins
+    reason = f"judged without {', '.join(unreal)}, which are no states of the car"
+    word = "ruled out" if alone.word == "ruled out" else "not shown"
+    return pads, replace(margins, verdict=replace(margins.verdict, word=word, reasons=(*alone.reasons, reason)))
+
+
+def _judge_all(
     case: Case, cases: LoadCases, block: AnyBlock | None, library: Library | None
 ) -> tuple[PadLoads | None, Margins]:
     from .margins.judging import judge

@@ -18,12 +18,12 @@ from .arrays import Floats, frozen
 from .errors import CaseError, nearest
 from .unit_table import DIMENSIONS, KINDS, NONE, STANDARD_GRAVITY, UNITS, Dimension, Kind, Unit
 
-_NUMBER = r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?"
+_NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
 _ONE = re.compile(rf"\s*({_NUMBER})\s*(.*?)\s*", re.DOTALL)
 _MANY = re.compile(rf"\s*\(\s*({_NUMBER}(?:\s*,\s*{_NUMBER})*)\s*\)\s*(.*?)\s*", re.DOTALL)
-_TERM_TEXT = r"\s*([+-]?)\s*(\d+\.?\d*|\.\d+)\s*([^\d\s+-]+)\s*"
+_TERM_TEXT = r"\s*([+-]?)\s*([0-9]+\.?[0-9]*|\.[0-9]+)\s*([^0-9\s+-]+)\s*"
 _TERM, _SUM = re.compile(_TERM_TEXT), re.compile(f"(?:{_TERM_TEXT})+")
-_ATOM = r"[A-Za-z%]+(?:\^-?\d)?"
+_ATOM = r"[A-Za-z%]+(?:\^-?[0-9])?"
 _UNIT_TEXT = re.compile(rf"(?:1/)?\(?{_ATOM}\)?(?:[*/]\(?{_ATOM}\)?)*")
 _SPELLINGS = str.maketrans({"·": "*", "⋅": "*", "×": "*", "²": "^2", "³": "^3", "μ": "u", "µ": "u"})
 
@@ -102,7 +102,7 @@ def _unit(text: str, value: str, kind: Kind, where: str) -> Unit:
         raise CaseError(where, f"{value!r} uses g", _form(kind), remedy)
     unit = UNITS.get(name)
     if unit is None:
-        if not _UNIT_TEXT.fullmatch(name) and re.search(r"[\d,;.+()]", name):
+        if not _UNIT_TEXT.fullmatch(name) and re.search(r"[0-9,;.+()]", name):
             _refuse(value, kind, where)
         unit = _rare_unit(name)
     if not name and kind.dimension != NONE:
@@ -152,17 +152,17 @@ def _refuse(value: str, kind: Kind, where: str) -> NoReturn:
 
 def _diagnosis(value: str, kind: Kind) -> tuple[str, str]:
     text = value.strip().replace("−", "-").replace("–", "-")
-    if not re.search(r"\d", text):
+    if not re.search(r"[0-9]", text):
         return "has no number", f"the number before the unit, as in '1 {kind.si}'".replace(" '", " '")
     if text != value.strip() and (_ONE.fullmatch(text) or _MANY.fullmatch(text)):
         return "uses a typographic minus sign", f"'{text}'"
     bracket = re.fullmatch(r"\((.*)\)\s*(.*)", text, re.DOTALL)
     if bracket:
         return _bracket_diagnosis(bracket[1], bracket[2], kind)
-    joined = re.sub(r"(?<=\d)[\s_'\u00a0\u202f](?=\d{3}(?!\d))", "", text)
+    joined = re.sub(r"(?<=[0-9])[\s_'\u00a0\u202f](?=[0-9]{3}(?![0-9]))", "", text)
     if joined != text and _ONE.fullmatch(joined):
         return "has a space or mark inside its number", f"'{joined}'"
-    comma = re.fullmatch(r"([+-]?)(\d+),(\d+)(.*)", joined)
+    comma = re.fullmatch(r"([+-]?)([0-9]+),([0-9]+)(.*)", joined)
     if comma:
         sign, whole, part, rest = comma.groups()
         point = f"'{sign}{whole}.{part}{rest}'"
@@ -171,7 +171,7 @@ def _diagnosis(value: str, kind: Kind) -> tuple[str, str]:
     if len(terms) > 1 and _SUM.fullmatch(text) and len({unit for _, _, unit in terms}) == 1:
         total = sum(-float(number) if sign == "-" else float(number) for sign, number, _ in terms)
         return "is a sum", f"its result, '{total:.12g} {terms[0][2]}'"
-    if re.search(r"[+*/-]\s*\d", text.lstrip("+-")):
+    if re.search(r"[+*/-]\s*[0-9]", text.lstrip("+-")):
         return "is a calculation", "its result as one number and a unit"
     return "is not one number and a unit", ""
 

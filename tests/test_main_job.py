@@ -230,6 +230,17 @@ def test_a_load_case_beyond_the_tyres_grip_rules_nothing_out_and_shows_nothing()
     assert [item.name for item in run.margins.checks if not item.ok] == ["load cases beyond the grip of an axle"]
 
 
+def test_a_failure_behind_an_impossible_load_case_still_rules_out() -> None:
+    """One stud slips on a kerb; corners that would tip the car are worse for it, and must not hide that."""
+    strict = "limits.slip_factor=1.9"
+    corners = [f"manoeuvres.corner_{side}.acceleration=(0, {a}, 0) m/s^2" for side, a in (("left", 95), ("right", -95))]
+    real, run = demo.run("demo", strict), demo.run("demo", strict, *corners)
+
+    assert real.margins.verdict.word == "ruled out"
+    assert run.margins.verdict.word == "ruled out"
+    assert any("corner_left" in reason and "no states of the car" in reason for reason in run.margins.verdict.reasons)
+
+
 def test_a_second_load_path_takes_its_share_off_the_face_slip() -> None:
     """A strut from tub to gearbox carries force past both faces: their slip changes with its tension."""
     run = demo.run("demo")

@@ -27,11 +27,11 @@ from .load_checks import (
     STATE_CHECKS,
     aero_doubts,
     air_checks,
-    cases_at_map_edge,
     cases_beyond_grip,
     grip_checks,
     lifted_cases,
     load_checks,
+    unreal_cases,
 )
 from .model import Margin, Margins, Verdict
 from .requirements import requirements
@@ -136,8 +136,7 @@ def verdict(case: Case, cases: LoadCases, margins: Sequence[Margin], checks: Seq
     failed = [item for item in (*case.checks, *checks) if not item.ok]
     broken = [item for item in failed if item.name not in STATE_CHECKS]
     beyond = cases_beyond_grip(case, cases)
-    unreal = (*lifted, *cases_at_map_edge(cases), *beyond)
-    ruling = [item for item in loaded if rules_out(item, unreal)]
+    ruling = [item for item in loaded if rules_out(item, unreal_cases(case, cases))]
     if ruling and not broken and (level != "faces" or not case.paths):
         word, reasons = "ruled out", tuple(_failure(item) for item in sorted(ruling, key=_lowest_first)[:3])
     else:

@@ -39,6 +39,12 @@ def cases_beyond_grip(case: Case, cases: LoadCases) -> tuple[str, ...]:
     return tuple(name for name, axles in zip(cases.names, used, strict=True) if (axles > 1.0 + GRIP_SLACK).any())
 
 
+def unreal_cases(case: Case, cases: LoadCases) -> tuple[str, ...]:
+    """Return the load cases that are no states of the car, or read its air beyond what is known."""
+    found = {*lifted_cases(cases), *cases_at_map_edge(cases), *cases_beyond_grip(case, cases)}
+    return tuple(name for name in cases.names if name in found)
+
+
 def grip_checks(case: Case, cases: LoadCases) -> Iterator[Check]:
     """Yield the check of the tyres' grip, where their friction is known."""
     used = grip_used(case, cases)

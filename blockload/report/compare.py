@@ -98,7 +98,14 @@ def _studs(first: Data, second: Data) -> Table:
     rows = []
     for (face, stud), kept in extremes.items():
         for label, offset in (("most pulled", 0), ("most pressed", 2), ("most shear", 4)):
-            rows.append((f"{face} {stud}", label, *_cells(kept[offset], kept[offset + 1], scale=1e3)))
+            words: tuple[str, ...] = _cells(kept[offset], kept[offset + 1], scale=1e3)
+            if label != "most shear":
+                never = [
+                    value is not None and value * (1 if offset == 0 else -1) <= 0.0
+                    for value in kept[offset : offset + 2]
+                ]
+                words = (*("never" if no else word for no, word in zip(never, words, strict=False)), *words[2:])
+            rows.append((f"{face} {stud}", label, *words))
     note = "kN, largest over the load cases of each; rigid face on equal studs, before preload; axial + pulled."
     return table("Studs", ("stud", "", "A", "B", "B − A"), rows, note)
 

@@ -64,7 +64,7 @@ def load_case_summary(cases: LoadCases) -> Table:
         )
         for i, name in enumerate(cases.names)
     ]
-    columns = ("load case", "speed", "down-force", "drag", "a_x", "a_y", "a_z", "α_x", "α_y", "α_z", "residual")
+    columns = ("load case", "speed", "downforce", "drag", "a_x", "a_y", "a_z", "α_x", "α_y", "α_z", "residual")
     note = (
         "m/s, kN, m/s² at the car's CG, rad/s²; residual: the largest of any body, as a share of the forces (moments) "
         "acting on it, summed again from the written terms."

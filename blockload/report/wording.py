@@ -20,7 +20,7 @@ SECTION_WORDS = {
     "N": ("kN", 1e3, "pulled apart", "pressed together"),
     "V_y": ("kN", 1e3, "rear part pushed left", "rear part pushed right"),
     "V_z": ("kN", 1e3, "rear part pushed up", "rear part pushed down"),
-    "T": ("kN·m", 1e3, "rear part turned left side up", "rear part turned right side up"),
+    "T": ("kN·m", 1e3, "rear part's left side lifted", "rear part's right side lifted"),
     "M_sag": ("kN·m", 1e3, "top pressed, bottom pulled", "top pulled, bottom pressed"),
     "M_lat": ("kN·m", 1e3, "left pulled, right pressed", "left pressed, right pulled"),
 }

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import sys
 from pathlib import Path
 
@@ -349,3 +350,21 @@ def test_tub_matrix(tmp_path: Path) -> None:
     rows[1][0] = 5e8
     rows[3][3] = -1e9
     assert "negative eigenvalue" in refused(tmp_path, text(rows)).found
+
+
+@pytest.mark.parametrize(
+    ("override", "key"),
+    [
+        ("bodies.tub.cg=(-1.22, 0, 0.4) mm", "bodies.tub.cg"),
+        ("axles.rear.corner.cg=(0, 0.77, 0.34) m", "axles.rear.corner.cg"),
+        ("bodies.gearbox.cg=(-1.0, 0, 0.32) m", "bodies.gearbox.cg"),
+        ("bodies.engine.inertia=(9000, 11000, 12000) kg*m^2", "bodies.engine.inertia"),
+        ("faces.front.studs.TL=(0.24, 0.47) mm", "faces.front.studs.TL"),
+        ("bodies.engine.mass=１９０ kg", "bodies.engine.mass"),
+    ],
+)
+def test_slips_of_unit_place_and_digit_are_refused_by_key(override: str, key: str) -> None:
+    """A CG in mm, a corner at the other axle, a gearbox ahead of the engine, a stud on the road, full-width digits."""
+    demo = Path(__file__).parents[2] / "cases" / "demo.toml"
+    with pytest.raises(CaseError, match=re.escape(key)):
+        read(demo, [override])
