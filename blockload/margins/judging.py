@@ -197,7 +197,7 @@ def _doubts(
 def _doubt(item: Margin, lifted: Sequence[str]) -> str:
     low, high = item.band or (0.0, 0.0)
     if high >= 0.0:
-        return f"band crosses zero, {low:.2f} to {high:.2f}: {_named(item)}"
+        return f"band crosses zero, {_ends(low, high)}: {_named(item)}"
     if rules_out(item, lifted):
         return f"fails at both ends of its band, but a check failed: {_named(item)}"
     why = "no state of the car" if item.load_case in lifted else item.trust
@@ -206,7 +206,13 @@ def _doubt(item: Margin, lifted: Sequence[str]) -> str:
 
 def _failure(item: Margin) -> str:
     low, high = item.band or (0.0, 0.0)
-    return f"fails at both ends of its band, {low:.2f} to {high:.2f}: {_named(item)}"
+    return f"fails at both ends of its band, {_ends(low, high)}: {_named(item)}"
+
+
+def _ends(low: float, high: float) -> str:
+    """A band in words, with a true minus; one number where it has no width."""
+    texts = [f"{value:.2f}".replace("-", "\N{MINUS SIGN}") for value in (low, high)]
+    return texts[0] if texts[0] == texts[1] else " to ".join(texts)
 
 
 def _named(item: Margin) -> str:

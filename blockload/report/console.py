@@ -88,13 +88,13 @@ def summary(case: Case, cases: LoadCases, margins: Margins) -> list[RenderableTy
     verdict = margins.verdict
     style = STYLES.get(verdict.word, "bold")
     head = Text.assemble(
-        (verdict.word.upper(), style), f"  at level {verdict.level}  ", (_short(case.title, 60), "dim")
+        (verdict.word.upper(), style), f"  at level {verdict.level}  ", (_short(case.title, WIDTH - 34), "dim")
     )
     parts: list[RenderableType] = [head]
     if verdict.lowest_margin is not None:
-        governing = plain_name(_short(verdict.governing, 70))
+        governing = plain_name(_short(verdict.governing, WIDTH))
         parts.append(Text(f"lowest margin {fixed(verdict.lowest_margin, 2)}: {governing}"))
-    parts += [Text(f"  because: {_short(reason, 88)}") for reason in verdict.reasons[:3]]
+    parts += [Text(f"  because: {_short(reason, 2 * WIDTH - 20)}") for reason in verdict.reasons[:3]]
     if len(verdict.reasons) > 3:
         parts.append(Text(f"  and {len(verdict.reasons) - 3} more reasons in the report"))
     parts += [_faces(cases, _governing_cases(cases, margins)), _margins(margins)]

@@ -44,6 +44,8 @@ def read_results(folder: Path) -> dict[str, Any]:
     if not isinstance(data, dict) or data.get("format") != "blockload.results/1":
         raise CaseError(str(path), "is not a result of this format", "blockload.results/1", remedy)
     missing = [key for key in NEEDED if key not in data]
+    if "inputs" in data and "files" not in data["inputs"]:
+        missing.append("inputs.files")
     if missing:
         raise CaseError(str(path), f"lacks {', '.join(missing)}", "the file as 'blockload check' wrote it", remedy)
     return data
@@ -85,7 +87,10 @@ def _margins(data: dict[str, Any]) -> Check:
     worst = 0.0
     for item in data["margins"]:
         margin = item["margin"]
-        if margin is None or item["criterion"].endswith("stiffness") or not item["applied"] > 0.0:
+        if item["criterion"].endswith("stiffness"):
+            continue
+        if margin is None or item["applied"] <= 0.0:  # without load there is no margin
+            worst = max(worst, float(margin is not None or item["applied"] > 0.0))
             continue
         expected = min(item["allowable"] / (item["factor"] * item["applied"]) - 1.0, LARGEST)
         outside = 0.0 if item["band"] is None else abs(min(item["band"]) - margin)
