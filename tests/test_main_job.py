@@ -21,6 +21,7 @@ from blockload.errors import BlockError, CaseError
 from blockload.installation.install import install
 from blockload.margins.faces import face_margins
 from blockload.margins.judging import judge
+from blockload.margins.model import Margins
 from blockload.margins.strength import von_mises
 from blockload.report.suspension_tables import lifted_table
 from blockload.response.cuts import section_stress
@@ -108,6 +109,27 @@ def test_a_flexibility_wrong_by_one_per_cent_is_caught() -> None:
     assert "flexibility is the average motion of the attachments" in [
         item.name for item in margins.checks if not item.ok
     ]
+
+
+def test_pads_installed_upside_down_and_stale_carried_masses_are_caught() -> None:
+    run = demo.run()
+    assert run.block is not None
+    assert run.library is not None
+    assert run.pads is not None
+    swapped = run.pads.weights.copy()
+    for a, b in (("TL", "BL"), ("TR", "BR")):
+        top, bottom = run.library.rows("front", a), run.library.rows("front", b)
+        swapped[..., top], swapped[..., bottom] = run.pads.weights[..., bottom], run.pads.weights[..., top]
+    upside_down = judge(run.case, run.cases, run.block, run.library, replace(run.pads, weights=swapped))
+    heavier = read(demo.CASES / "demo.toml", ["bodies.engine.mass=195 kg"])
+    stale = judge(heavier, run.cases, run.block, run.library, run.pads)
+
+    assert "sagging presses the upper pads against the lower ones" in failed(upside_down)
+    assert "mesh and carried masses add up to the engine" in failed(stale)
+
+
+def failed(margins: Margins) -> list[str]:
+    return [item.name for item in margins.checks if not item.ok]
 
 
 @pytest.mark.parametrize("key", ["faces.front.studs.TL", "faces.rear.studs.MR"])

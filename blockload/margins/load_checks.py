@@ -30,7 +30,6 @@ def load_checks(cases: LoadCases) -> Iterator[Check]:
     lifted = lifted_cases(cases)
     note = f"the ground would have to pull in {', '.join(lifted)}" if lifted else ""
     yield Check(name=WHEEL_CHECK, ok=not lifted, value=len(lifted), limit=0, note=note)
-    yield from _sign(cases)
 
 
 def cases_beyond_grip(case: Case, cases: LoadCases) -> tuple[str, ...]:
@@ -84,24 +83,6 @@ def aero_doubts(cases: LoadCases) -> Iterator[str]:
     if cases.aero_bounds is not None:
         count = len(cases.aero_bounds.splits)
         yield f"only totals of the aero are known: each band spans {count} extreme splits of it"
-
-
-def _sign(cases: LoadCases) -> Iterator[Check]:
-    """The trade's sign: where the front face sags most, its upper studs are pressed and its lower ones pulled."""
-    face = cases.faces["front"]
-    sag = cases.section("front")[:, 4]
-    worst = int(np.argmax(sag))
-    if sag[worst] <= 0.0:
-        return
-    height = face.stud_at[:, -1] - face.stud_at[:, -1].mean()
-    couple = -float(face.stud_axial[worst].sum(axis=0) @ height)
-    yield Check(
-        name="sagging presses the upper studs and pulls the lower ones",
-        ok=bool(abs(couple / sag[worst] - 1.0) < BALANCE),
-        value=couple / float(sag[worst]),
-        limit=1.0,
-        note=f"studs' couple over M_sag in {cases.names[worst]}",
-    )
 
 
 def below(name: str, value: float, limit: float, note: str = "") -> Check:

@@ -13,6 +13,7 @@ import numpy as np
 from ..block.model import AnyBlock, Block
 from ..car.model import LoadCases
 from ..case.model import Case, Check
+from ..installation.joining import pads as front_pads
 from ..installation.model import PadLoads
 from ..installation.proof import face_sum
 from ..response.cuts import section_cut
@@ -52,6 +53,7 @@ def installed_checks(
         text, limit = LIBRARY_CHECKS.get(name, (name, FIELD))
         yield below(text, value, limit)
     yield from _installed(case, cases, block, library, pads)
+    yield from _sign(case, cases, block, library, pads)
     yield _left_out(cases, pads)
     yield from _metal(case, block, pads)
 
@@ -89,13 +91,29 @@ def _installed(case: Case, cases: LoadCases, block: AnyBlock, library: Library, 
     )
 
 
+def _sign(case: Case, cases: LoadCases, block: AnyBlock, library: Library, pads: PadLoads) -> Iterator[Check]:
+    """The trade's sign, read off the installed pads: where the front face sags most, the upper row is pressed more."""
+    sag = cases.section("front")[:, 4]
+    worst = int(np.argmax(sag))
+    front = front_pads(block, case, "front")
+    height = np.array([pad.centroid[2] for pad in front])
+    upper = height > height.mean()
+    if sag[worst] <= 0.0 or upper.all() or not upper.any():
+        return
+    state = pads.weights[pads.middle, worst].sum(axis=0)
+    axial = np.array([state[library.rows("front", pad.name)][0] for pad in front])
+    gap = float(axial[upper].mean() - axial[~upper].mean())
+    note = f"N per pad in {cases.names[worst]}, where M_sag is {sag[worst] / 1e3:.3g} kN·m"
+    yield below("sagging presses the upper pads against the lower ones", gap, 0.0, note)
+
+
 def _left_out(cases: LoadCases, pads: PadLoads) -> Check:
     """Size of ω×(ω×r) in the block, which is no rigid linear field, against the engine's own acceleration."""
     own = np.linalg.norm(cases.engine_acceleration.sum(axis=1), axis=1)
-    worst = int(np.argmax(pads.left_out))
-    note = f"{pads.left_out[worst]:.2g} m/s² in {cases.names[worst]}"
-    share = pads.left_out[worst] / max(own.max(), np.finfo(float).tiny)
-    return below("centripetal acceleration left out inside the block is small", share, LEFT_OUT, note)
+    share = pads.left_out / np.maximum(own, 1e-3)  # m/s²: a block in free fall has no acceleration to compare with
+    worst = int(np.argmax(share))
+    note = f"{pads.left_out[worst]:.2g} m/s² in {cases.names[worst]}, as a share of the engine's own"
+    return below("centripetal acceleration left out inside the block is small", share[worst], LEFT_OUT, note)
 
 
 def _metal(case: Case, block: AnyBlock, pads: PadLoads) -> Iterator[Check]:
