@@ -16,7 +16,7 @@ from installation import synthetic_car as car
 from blockload.margins.splits import rigid_splits, spring_split
 from blockload.margins.studs import stud_margins
 
-SOURCE = "FIA F1 regulations 2014, art. 5.3.5"
+SOURCE = "pattern: FIA F1 Technical Regulations 2014, art. 5.3.5; forces: statics of a rigid flange"
 PATTERN = {
     "BL": (0.215, 0.015),
     "BR": (-0.215, 0.015),

@@ -54,14 +54,13 @@ def axle_loads(cases: LoadCases) -> tuple[float, float]:
 
 
 def test_centre_of_gravity_from_axle_weights(published: Published) -> None:
-    """2313 lb and 1322 lb on 109 in put the CG 39.64 in behind the front axle, and back again."""
+    """A CG 39.64 in behind the front axle of 109 in puts 2313 lb and 1322 lb on the axles, to the inch's last digit."""
     weights, wheelbase = np.array((2313.0, 1322.0)) * POUND, 109 * INCH
-    behind = wheelbase * weights[1] / weights.sum()
     source = "Gillespie 1992, ch. 1, ex. 1 (from memory)"
-    published("CG behind front axle", source, expected=39.64 * INCH, got=behind, unit="m", tolerance=1e-4)
-    front, rear = axle_loads(balance(point_car(weights.sum() / 9.81, wheelbase, behind, 0.5), [manoeuvre("stand")]))
-    published("front axle weight", source, expected=weights[0], got=front, unit="N", tolerance=1e-9)
-    published("rear axle weight", source, expected=weights[1], got=rear, unit="N", tolerance=1e-9)
+    car = point_car(weights.sum() / 9.81, wheelbase, 39.64 * INCH, 0.5)
+    front, rear = axle_loads(balance(car, [manoeuvre("stand")]))
+    published("front axle weight", source, expected=weights[0], got=front, unit="N", tolerance=1e-4)
+    published("rear axle weight", source, expected=weights[1], got=rear, unit="N", tolerance=2e-4)
 
 
 def test_acceleration_up_a_slope(published: Published) -> None:
