@@ -34,7 +34,16 @@ BEAM_ONLY = (
 NO_MODULUS = "shear stress of torsion in the block: no torsion_modulus at its stations"
 NO_FIBRES = "stress of the block: its stiffness alone is known"
 _ROUNDING = 1e-9  # of the wheel loads: a push below it is none
+KEPT_FOR_LATER = ("gauges", "heat", "duty", "scatter", "measured", "accepted")
+UNUSED_LIMITS = ("life_distance", "bearing_line")
 FACES_ONLY = ("stress, stiffness and shape of the block: there is none yet",)
+
+
+def _kept_for_later(case: Case) -> list[str]:
+    """Return what the file says and nothing uses yet, in one line."""
+    kept = [f"[{name}]" for name in KEPT_FOR_LATER if name in case.document]
+    kept += [f"limits.{name}" for name in UNUSED_LIMITS if name in case.document.get("limits", {})]
+    return [f"read but not used yet: {', '.join(kept)}"] if kept else []
 
 
 def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
@@ -44,6 +53,7 @@ def not_judged(case: Case, cases: LoadCases, *, level: str) -> tuple[str, ...]:
         gaps.append("second load paths: given, and not used before there is a block")
     if case.installation.second_paths is None and not case.paths:
         gaps.append("second load paths: the case does not state that nothing else joins tub, engine and gearbox")
+    gaps += _kept_for_later(case)
     gaps += [f"{gap.situation}: {gap.why}" for gap in expansion(case).omissions]
     gaps += _signs_that_never_turn(cases)
     if case.laps:

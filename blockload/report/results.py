@@ -121,7 +121,7 @@ def load_case(case: Case, cases: LoadCases, index: int) -> dict[str, Any]:
         },
         "links": links_written(cases, index),
         "crank_torque": cases.crank_torque[index],
-        "faces": {name: _face(cases, name, index) for name in cases.faces},
+        "faces": {name: _face(cases, name, index) | _includes(case) for name in cases.faces},
         "free_bodies": {},
         **aero_written(cases, index),
         **situation_written(cases, index),
@@ -219,6 +219,11 @@ def _use(cases: LoadCases, index: int, wheel: int) -> dict[str, float]:
 def _contact(case: Case, corner: str) -> np.ndarray[Any, Any]:
     axle = case.axles["front" if corner[0] == "F" else "rear"]
     return np.array([axle.x, (0.5 if corner[1] == "L" else -0.5) * axle.track, 0.0])
+
+
+def _includes(case: Case) -> dict[str, Any]:
+    """Say that a face's wrench holds what second load paths carry past its studs, where there are any."""
+    return {"includes_paths": True} if case.paths else {}
 
 
 def _face(cases: LoadCases, name: str, index: int) -> dict[str, Any]:

@@ -18,6 +18,7 @@ from blockload.margins.faces import _less_paths, face_margins
 from blockload.margins.judging import verdict
 from blockload.margins.load_checks import GRIP_CHECK, grip_checks
 from blockload.margins.model import Margin
+from blockload.margins.scope import not_judged
 
 FAILING = Margin(
     criterion="yield",
@@ -102,3 +103,12 @@ def test_pads_on_a_soft_tub_carry_no_couples() -> None:
         assert np.abs(force).max() > 0.0
         assert np.abs(couple).max() < 1e-9 * np.abs(force).max()
     assert pads.sum_gap < 1e-9
+
+
+def test_keys_kept_for_later_are_listed_and_not_passed_over_in_silence() -> None:
+    case = car.case()
+    wordy = replace(case, document={**case.document, "heat": {"block": "90 degC"}, "limits": {"life_distance": "1 km"}})
+    gaps = not_judged(wordy, car.random_cases(case), level="solid")
+
+    assert "read but not used yet: [heat], limits.life_distance" in gaps
+    assert not any("not used yet" in gap for gap in not_judged(case, car.random_cases(case), level="solid"))
