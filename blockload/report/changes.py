@@ -23,6 +23,7 @@ Data = Mapping[str, Any]
 
 _SIGNS = np.array((1.0, 1.0, 1.0, 1.0, -1.0, -1.0))
 _NAMED = 5
+SHEAR = " shear"
 _ROUNDING = 1e-9  # of the response itself
 
 
@@ -39,7 +40,7 @@ class Change:
 
 
 def changes(first: Data, second: Data) -> tuple[Change, ...]:
-    """Changes of every section component and every stud's axial force between two results documents."""
+    """Changes of every section component and every stud's axial and shear force between two results documents."""
     found = []
     for face in ("front", "rear"):
         sides = [_responses(data, face) for data in (first, second)]
@@ -47,6 +48,7 @@ def changes(first: Data, second: Data) -> tuple[Change, ...]:
             change = _governing(face, response, sides[0][response], sides[1][response])
             if change is not None:
                 found.append(change)
+        found += _shear_changes(face, first, second)
     return tuple(found)
 
 
@@ -55,7 +57,8 @@ def change_table(first: Data, second: Data) -> Table | None:
     rows = []
     for change in changes(first, second):
         unit = SECTION_WORDS[change.response][0] if change.response in SECTION else "kN"
-        where = change.response if change.response in SECTION else f"{plain_name(change.response)} axial"
+        plain = change.response in SECTION or change.response.endswith(SHEAR)
+        where = change.response if plain else f"{plain_name(change.response)} axial"
         rows.append(
             (
                 f"{change.face} {where}",
@@ -110,6 +113,43 @@ def _responses(data: Data, face: str) -> dict[str, dict[str, dict[str, float]]]:
         wrenches = np.array(list(written["sources"].values()), dtype=float)
         for response, values in _values(face, written, wrenches):
             found.setdefault(response, {})[name] = dict(zip(written["sources"], values.tolist(), strict=True))
+    return found
+
+
+def _shear_changes(face: str, first: Data, second: Data) -> Iterator[Change]:
+    """Changes of every stud's resultant shear, in the load case of both in which it is largest.
+
+    A length is not linear in its parts, but |b| − |a| = (b − a)·(a + b) / (|a| + |b|) is exact, and linear in b − a.
+    """
+    sides = [_shears(data, face) for data in (first, second)]
+    for stud in (name for name in sides[0] if name in sides[1]):
+        a, b = sides[0][stud], sides[1][stud]
+        sums = {case: (sum(a[case].values()), sum(b[case].values())) for case in a if case in b}
+        sizes = {case: [float(np.linalg.norm(total)) for total in pair] for case, pair in sums.items()}
+        name = max(sizes, key=lambda case: max(sizes[case]), default=None)
+        if name is None or abs(sizes[name][1] - sizes[name][0]) <= _ROUNDING * max(sizes[name]):
+            continue
+        along = (sums[name][0] + sums[name][1]) / sum(sizes[name])
+        none = np.zeros(2)
+        parts = {
+            source: float((b[name].get(source, none) - a[name].get(source, none)) @ along)
+            for source in dict.fromkeys((*a[name], *b[name]))
+        }
+        before, after = sizes[name]
+        yield Change(face=face, response=stud + SHEAR, load_case=name, first=before, second=after, parts=parts)
+
+
+def _shears(data: Data, face: str) -> dict[str, dict[str, dict[str, Floats]]]:
+    """Shear (2,) of every stud by load case and source."""
+    found: dict[str, dict[str, dict[str, Floats]]] = {}
+    for name, case in data["load_cases"].items():
+        written = case.get("faces", {}).get(face, {})
+        if not written.get("sources"):
+            continue
+        at = np.array([stud["at"] for stud in written["studs"].values()], dtype=float)
+        shear = rigid_face(at, np.array(list(written["sources"].values()), dtype=float))[1]
+        for stud, values in zip(written["studs"], shear.transpose(1, 0, 2), strict=True):
+            found.setdefault(stud, {})[name] = dict(zip(written["sources"], values, strict=True))
     return found
 
 

@@ -195,7 +195,8 @@ def test_a_change_is_the_sum_of_its_sources_and_names_what_was_changed() -> None
         if item.response in SECTION:
             assert after["section"][item.response] == pytest.approx(item.second, abs=1e-6)
         else:
-            assert before["studs"][item.response]["axial"] == pytest.approx(item.first, abs=1e-6)
+            stud, _, shear = item.response.partition(" ")
+            assert before["studs"][stud][shear or "axial"] == pytest.approx(item.first, abs=1e-6)
     sag = next(item for item in found if (item.face, item.response) == ("front", "M_sag"))
     assert max(sag.parts, key=lambda name: abs(sag.parts[name])) == "aero.rear_wing"
     assert all(
@@ -262,3 +263,19 @@ def test_one_load_case_in_full_shows_both_faces_and_every_body() -> None:
     assert frozen(cases.section("front")[1])[4] / 1e3 == pytest.approx(
         float(next(row for row in along.rows if row[-1] == "front face")[5].replace("−", "-")), abs=0.005
     )
+
+
+def test_a_changed_shear_is_split_into_parts_that_sum_to_the_change() -> None:
+    """Parts along the mean direction of both shears are exact, though a length is not linear in them."""
+    demo = Path(__file__).parents[2] / "cases" / "demo.toml"
+    heavier = ["bodies.gearbox.mass=150 kg", "faces.rear.studs.BL=(0.14, 0.06) m"]
+    first, second = (load_results(*pipeline.loads(demo, overrides)) for overrides in ([], heavier))
+    found = [item for item in changes(first, second) if item.response.endswith(" shear")]
+
+    assert len(found) == 10
+    for item in found:
+        written = second["load_cases"][item.load_case]["faces"][item.face]["studs"][
+            item.response.removesuffix(" shear")
+        ]
+        assert item.second == pytest.approx(written["shear"], rel=1e-9)
+        assert sum(item.parts.values()) == pytest.approx(item.second - item.first, abs=1e-6)
